@@ -1,0 +1,2 @@
+# SPDX-License-Identifier: BSD-3-Clause
+"""Pictures; each function takes and returns matplotlib Axes."""

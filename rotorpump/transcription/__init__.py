@@ -1,0 +1,2 @@
+# SPDX-License-Identifier: BSD-3-Clause
+"""The task as a nonlinear program, and the way back."""

@@ -1,0 +1,84 @@
+# SPDX-License-Identifier: BSD-3-Clause
+"""The mesh: how each arc is divided into intervals, and which of them rest on an end stop."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from numpy.typing import NDArray
+
+Array = NDArray[np.float64]
+
+FREE, OUTER, INNER = 0, 1, -1
+"""The mass moves freely, or rests on the outer or the inner end stop."""
+
+
+@dataclass(frozen=True, eq=False)
+class Mesh:
+    """Division of a chain of arcs into intervals.
+
+    Parameters
+    ----------
+    shares : tuple of ndarray
+        For each arc, the nominal length of each interval as a share of the arc; sums to one.
+    rests : ndarray of int, shape (intervals,)
+        FREE, OUTER or INNER for each interval.
+    flexible : bool
+        Whether interval lengths may depart from the nominal ones, so that the ends of intervals
+        move to the switches.
+    """
+
+    shares: tuple[Array, ...]
+    rests: NDArray[np.intp]
+    flexible: bool
+
+    @classmethod
+    def uniform(cls, arcs: int, intervals: int, *, flexible: bool) -> Mesh:
+        """Divide each arc into equal intervals, none of them resting."""
+        share = np.full(intervals, 1.0 / intervals)
+        return cls((share,) * arcs, np.zeros(arcs * intervals, dtype=np.intp), flexible)
+
+    @property
+    def intervals(self) -> int:
+        """Number of intervals."""
+        return int(self.rests.size)
+
+    @property
+    def counts(self) -> tuple[int, ...]:
+        """Number of intervals of each arc."""
+        return tuple(share.size for share in self.shares)
+
+    @cached_property
+    def edges(self) -> NDArray[np.intp]:
+        """Nodes at which arcs meet, shape (arcs + 1,)."""
+        return np.concatenate(([0], np.cumsum(self.counts))).astype(np.intp)
+
+    def node_times(self, ends: Sequence[float]) -> Array:
+        """Place the nodes at their nominal shares of arcs that end at the given times."""
+        starts = (0.0, *ends[:-1])
+        pieces = [
+            a + (b - a) * np.concatenate(([0.0], np.cumsum(share[:-1])))
+            for a, b, share in zip(starts, ends, self.shares, strict=True)
+        ]
+        return np.append(np.concatenate(pieces), ends[-1])
+
+    def with_rests(self, rests: NDArray[np.intp], *, flexible: bool) -> Mesh:
+        """Return the same division with other resting intervals."""
+        return Mesh(self.shares, rests, flexible)
+
+    def settled(self, nodes: Array) -> Mesh:
+        """Take the lengths that a solution found, between its ``nodes``, as the nominal ones."""
+        lengths = np.diff(nodes)
+        pieces = np.split(lengths, self.edges[1:-1])
+        return Mesh(tuple(p / p.sum() for p in pieces), self.rests, self.flexible)
+
+    def split(self, chosen: NDArray[np.bool_]) -> Mesh:
+        """Divide the chosen intervals into two halves each."""
+        times = 1 + chosen.astype(np.intp)
+        pieces = []
+        for share, count in zip(self.shares, np.split(times, self.edges[1:-1]), strict=True):
+            pieces.append(np.repeat(share / count, count))
+        return Mesh(tuple(pieces), np.repeat(self.rests, times), self.flexible)

@@ -1,0 +1,85 @@
+# SPDX-License-Identifier: BSD-3-Clause
+"""From the solver's variables back to a motion."""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import NDArray
+
+from rotorpump.physics.constants import Constants
+from rotorpump.physics.equations import contact_force, wheel_speed
+from rotorpump.solution.assembly import trajectory_of
+from rotorpump.solution.trajectory import Trajectory
+from rotorpump.transcription.interval import TIME
+from rotorpump.transcription.mesh import FREE, INNER, OUTER
+from rotorpump.transcription.nodes import radau_nodes
+from rotorpump.transcription.path import FORCE_LIMITED, SlidePath
+from rotorpump.transcription.program import Program
+
+Array = NDArray[np.float64]
+
+
+def node_marks(program: Program, z: Array) -> Array:
+    """Independent variable at the nodes: time [s] or angle [rad], shape (intervals + 1,)."""
+    if program.problem.form.independent == TIME:
+        return np.asarray(z[program.layout.node[:, 0]] * program.scales.time)
+    return np.asarray(z[program.layout.node[:, 1]])
+
+
+def recover_trajectory(program: Program, z: Array) -> Trajectory:
+    """Return the motion that scaled variables describe, its nodes the collocation points."""
+    form, layout, scales = program.problem.form, program.layout, program.scales
+    rig = program.problem.rig
+    constants = Constants.of(rig)
+    points = radau_nodes(form.degree).points
+    collocated, places = layout.collocated(form)
+    momentum = z[places] * scales.momentum
+    edges = z[layout.node[:, 0]] * scales.time
+    duration = np.diff(edges)[:, None]
+    if form.independent == TIME:
+        angle = z[collocated]
+        elapsed = duration * points
+    else:
+        marks = z[layout.node[:, 1]]
+        angle = marks[:-1, None] + np.diff(marks)[:, None] * points
+        elapsed = z[collocated] * scales.time - edges[:-1, None]
+    controls = scales.slide_value(form.rung, z[layout.controls])
+    path = SlidePath(
+        tuple(scales.slide_value(k, z[layout.node[:-1, 3 + k]])[:, None] for k in range(form.rung)),
+        controls[:, :1],
+        controls[:, 1:],
+        duration,
+    )
+    radial, slide_speed = path.position(elapsed), path.speed(elapsed)
+    speed = wheel_speed(constants, momentum, radial)
+    acceleration = path.acceleration(elapsed)
+    contact = contact_force(np, constants, angle, speed, radial, acceleration)
+    contact = np.broadcast_to(contact, angle.shape)
+    drive = _drive_share(program, contact)
+    arcs = program.mesh.edges * form.degree
+    return trajectory_of(
+        rig,
+        *(
+            _joined(column)
+            for column in (edges[:-1, None] + elapsed, angle, momentum, radial, slide_speed, drive)
+        ),
+        breaks=np.arange(program.mesh.intervals + 1) * form.degree,
+        arcs=arcs,
+        contact=_joined(contact),
+    )
+
+
+def _joined(values: Array) -> Array:
+    """Chain the intervals' points; where two meet, the node holds the value on its left."""
+    return np.concatenate((values[0, :1], values[:, 1:].ravel()))
+
+
+def _drive_share(program: Program, contact: Array) -> Array:
+    """Force of the drive [N]: what the end stop under a resting mass does not bear."""
+    if program.problem.form.rung != FORCE_LIMITED:
+        return contact
+    limit = program.problem.rig.radial.force
+    rests = program.mesh.rests[:, None]
+    share = np.where(rests == OUTER, np.maximum(contact, 0.0), contact)
+    share = np.where(rests == INNER, np.minimum(contact, 0.0), share)
+    return np.where(rests == FREE, np.clip(share, -limit, limit), share)
