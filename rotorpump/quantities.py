@@ -53,11 +53,20 @@ QUANTITIES: dict[str, Quantity] = {
 }
 
 
-def finite(field: str, value: object) -> float:
-    """Return ``value`` as a float; it must be a finite number."""
+def real(field: str, value: object) -> float:
+    """Return ``value`` as a float, which may be infinite or not a number."""
     if isinstance(value, bool) or not isinstance(value, Real):
         raise InputError(field, "must be a number", value)
-    number = float(value)
+    try:
+        return float(value)
+    except OverflowError as error:
+        rule = "must be a number that a float can hold"
+        raise InputError(field, rule, _printable(value)) from error
+
+
+def finite(field: str, value: object) -> float:
+    """Return ``value`` as a float; it must be a finite number."""
+    number = real(field, value)
     if not math.isfinite(number):
         raise InputError(field, "must be finite", value)
     return number
@@ -81,11 +90,10 @@ def non_negative(field: str, value: object) -> float:
 
 def limit(field: str, value: object) -> float:
     """Return ``value`` as a float; it must be above zero and may be infinite (no limit)."""
-    if isinstance(value, Real) and not isinstance(value, bool) and float(value) == math.inf:
-        return math.inf
-    if isinstance(value, Real) and not isinstance(value, bool) and math.isnan(float(value)):
+    number = real(field, value)
+    if math.isnan(number):
         raise InputError(field, "must be greater than 0, or inf for no limit", value)
-    return positive(field, value)
+    return number if number == math.inf else positive(field, value)
 
 
 def interval(field: str, value: object) -> tuple[float, float]:
@@ -110,3 +118,12 @@ def instance(field: str, value: object, kind: type) -> None:
     """Raise unless ``value`` is an instance of ``kind``."""
     if not isinstance(value, kind):
         raise InputError(field, f"must be a {kind.__name__}", value)
+
+
+def _printable(value: Real) -> object:
+    """Return ``value``, or its size in words where Python refuses to write out all its digits."""
+    try:
+        repr(value)
+    except ValueError:
+        return f"a number of {abs(math.floor(value)).bit_length()} bits"
+    return value

@@ -22,7 +22,7 @@ from rotorpump.tasks import Pump, Rotate, SpinUp, Task, measure
 
 Array = NDArray[np.float64]
 
-GRID = (0.1, 0.3, 0.5, 0.7, 0.9, 1.1)
+GRID = (0.1, 0.3, 0.5, 0.7, 0.9, 1.1, 1.3)
 """Leads that are tried first, in both places."""
 
 ROUNDS = 3
@@ -40,33 +40,37 @@ def rehearse(rig: Rig, task: Task) -> list[Trial]:
     InputError
         If the task cannot begin on this rig.
     """
-    attempt = _attempt(rig, task)
-    coarse = GRID[::2] if isinstance(task, Rotate) else GRID
-    trials = [trial for a in coarse for b in coarse for trial in attempt(Leads(a, b))]
-
-    def rank(trial: Trial) -> tuple[bool, bool, float]:
-        return not trial.slams, trial.reached, trial.merit
-
+    attempts = _attempts(rig, task)
+    coarse = GRID[::3] if isinstance(task, Rotate) else GRID
+    trials = [attempt(Leads(a, b)) for a in coarse for b in coarse for attempt in attempts]
+    which = max(range(len(trials)), key=lambda k: _rank(trials[k])) % len(attempts)
     reach = (coarse[1] - coarse[0]) / 2.0
     for _ in range(ROUNDS):
-        best = max(trials, key=rank).run.leads
+        best = max(trials, key=_rank).run.leads
         for da, db in ((reach, 0.0), (-reach, 0.0), (0.0, reach), (0.0, -reach)):
-            trials += attempt(Leads(max(best.bottom + da, 0.0), max(best.turn + db, 0.0)))
+            nearby = Leads(max(best.bottom + da, 0.0), max(best.turn + db, 0.0))
+            trials.append(attempts[which](nearby))
         reach /= 2.0
-    return sorted(trials, key=rank, reverse=True)
+    return sorted(trials, key=_rank, reverse=True)
 
 
-def _attempt(rig: Rig, task: Task) -> Callable[[Leads], list[Trial]]:
-    """Return what runs the law on the task with given leads."""
+def _rank(trial: Trial) -> tuple[bool, bool, float]:
+    """Order of preference, the best largest."""
+    return not trial.slams, trial.reached, trial.merit
+
+
+def _attempts(rig: Rig, task: Task) -> list[Callable[[Leads], Trial]]:
+    """Return what runs the law on the task with given leads, one for each way to begin."""
     if isinstance(task, Rotate):
         constants = Constants.of(rig)
         weight = 4.0 * constants.mass * constants.gravity * constants.outer
         least = math.sqrt(weight / rig.inertia(constants.outer))
-        return lambda leads: [try_rotation(rig, leads, f * least) for f in ROTATION_SPEEDS]
+        speeds = [factor * least for factor in ROTATION_SPEEDS]
+        return [lambda leads, speed=speed: try_rotation(rig, leads, speed) for speed in speeds]
     task.check(rig)
     if isinstance(task, Pump):
-        return lambda leads: [try_pump(rig, task, leads)]
-    return lambda leads: [try_spin_up(rig, task, leads)]
+        return [lambda leads: try_pump(rig, task, leads)]
+    return [lambda leads: try_spin_up(rig, task, leads)]
 
 
 def run_practical(rig: Rig, task: Task, *, objective: str | None = None) -> LawRun:

@@ -88,7 +88,8 @@ class Trajectory:
         Returns
         -------
         Trajectory
-            Its nodes are the given times; at a jump, the value after it.
+            Its nodes are the given times; at a jump, the value after it. In a motion of no
+            duration, every value is that of its last node.
 
         Raises
         ------
@@ -105,13 +106,11 @@ class Trajectory:
         wanted = np.clip(wanted, self.time[0], self.time[-1])
         values = {name: np.empty_like(wanted) for name in self.quantities()}
         values["time"] = wanted
-        edges = self.time[self.breaks]
-        where = np.searchsorted(edges, wanted, side="right") - 1
-        where = np.minimum(where, self._last_interval)
-        for interval in np.unique(where):
-            chosen = where == interval
-            nodes = np.arange(self.breaks[interval], self.breaks[interval + 1] + 1)
-            self._interpolate(nodes, wanted[chosen], chosen, values)
+        if self.duration == 0.0:
+            for name in self.quantities()[1:]:
+                values[name].fill(getattr(self, name)[-1])
+        else:
+            self._interpolate(wanted, values)
         ends = np.arange(wanted.size, dtype=np.intp)
         return Trajectory(**values, breaks=ends, arcs=ends[[0, -1]])
 
@@ -133,17 +132,21 @@ class Trajectory:
         lengths = np.diff(self.time[self.breaks])
         return int(np.flatnonzero(lengths > 0.0)[-1])
 
-    def _interpolate(
-        self, nodes: Indices, wanted: Array, chosen: NDArray[np.bool_], values: dict[str, Array]
-    ) -> None:
-        """Fill ``values`` for the times of one interval."""
-        full = _lagrange(self.time[nodes], wanted)
-        own = _lagrange(self.time[nodes[1:]], wanted)
-        for name, column in values.items():
-            if name == "time":
-                continue
-            source = getattr(self, name)
-            column[chosen] = own @ source[nodes[1:]] if name in HELD else full @ source[nodes]
+    def _interpolate(self, wanted: Array, values: dict[str, Array]) -> None:
+        """Fill ``values`` for times within the motion, interval by interval."""
+        edges = self.time[self.breaks]
+        where = np.searchsorted(edges, wanted, side="right") - 1
+        where = np.minimum(where, self._last_interval)
+        for interval in np.unique(where):
+            chosen = where == interval
+            nodes = np.arange(self.breaks[interval], self.breaks[interval + 1] + 1)
+            full = _lagrange(self.time[nodes], wanted[chosen])
+            own = _lagrange(self.time[nodes[1:]], wanted[chosen])
+            for name in self.quantities()[1:]:
+                source = getattr(self, name)
+                values[name][chosen] = (
+                    own @ source[nodes[1:]] if name in HELD else full @ source[nodes]
+                )
 
 
 def _lagrange(nodes: Array, wanted: Array) -> Array:

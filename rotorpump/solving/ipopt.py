@@ -16,7 +16,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from rotorpump.solution.status import Status
-from rotorpump.solving.interruption import interrupted
+from rotorpump.solving.interruption import heed_interrupts, interrupted
 from rotorpump.transcription.program import Program
 
 Array = NDArray[np.float64]
@@ -150,15 +150,16 @@ def run_ipopt(
         }
     )
     began = time.perf_counter()
-    result = solver(
-        x0=start,
-        p=program.parameters,
-        lbx=program.variable_bounds.lower,
-        ubx=program.variable_bounds.upper,
-        lbg=program.row_bounds.lower,
-        ubg=program.row_bounds.upper,
-        **given,
-    )
+    with heed_interrupts():
+        result = solver(
+            x0=start,
+            p=program.parameters,
+            lbx=program.variable_bounds.lower,
+            ubx=program.variable_bounds.upper,
+            lbg=program.row_bounds.lower,
+            ubg=program.row_bounds.upper,
+            **given,
+        )
     if watcher.failure is not None:
         raise watcher.failure
     statistics = solver.stats()

@@ -29,8 +29,8 @@ from rotorpump.transcription.recovery import node_marks, recover_trajectory
 Array = NDArray[np.float64]
 
 PER_ARC = 8
-PER_TURN = 40
-"""Intervals of the first mesh, in each arc and in a turn of steady rotation."""
+PER_HALF_TURN = 20
+"""Intervals of the first mesh, in each arc of a motion in time and of a steady rotation."""
 
 RELAXATION = 1e-2
 """First relaxation of the end stops, as a share of force limit times stroke."""
@@ -38,6 +38,9 @@ RELAXATION = 1e-2
 SEAT = 2e-3
 CREEP = 2e-2
 """Gap (in strokes) and speed (in typical speeds) below which the mass counts as resting."""
+
+MOST_ITERATIONS = 300
+"""Iterations of one solve; a start that takes more is rarely worth it."""
 
 PATTERNS = 2
 """Corrections of the pattern of resting intervals at most."""
@@ -83,14 +86,19 @@ def routes_for(rig: Rig) -> tuple[Route, ...]:
 
 def take_direct(rig: Rig, task: Task, seed: Seed, monitor: Monitor | None) -> Candidate:
     """Solve with the resting intervals of the starting motion."""
-    problem = assign(rig, task, seed)
+    return solve_posed(task, assign(rig, task, seed), seed, monitor)
+
+
+def solve_posed(task: Task, problem: Problem, seed: Seed, monitor: Monitor | None) -> Candidate:
+    """Solve a problem from a seed, with the resting intervals of the seed."""
+    rig = problem.rig
     mesh = _first_mesh(problem, flexible=True)
     program = Program(problem, mesh)
     start = program.start_from(seed.guess, seed.ends)
     if can_rest(rig):
         program = Program(problem, mesh.with_rests(find_rests(program, start), flexible=True))
         start = program.variable_bounds.clip(start)
-    return _settle(task, program, start, Settings(), monitor, 0)
+    return _settle(task, program, start, Settings(iterations=MOST_ITERATIONS), monitor, 0)
 
 
 def take_relaxed(rig: Rig, task: Task, seed: Seed, monitor: Monitor | None) -> Candidate:
@@ -107,11 +115,12 @@ def take_relaxed(rig: Rig, task: Task, seed: Seed, monitor: Monitor | None) -> C
     strict = replace(problem, form=replace(problem.form, relaxed=False))
     program = Program(strict, settled.with_rests(rests, flexible=True))
     start = program.variable_bounds.clip(outcome.variables)
-    return _settle(task, program, start, Settings(barrier=1e-2), monitor, outcome.iterations)
+    settings = Settings(barrier=1e-2, iterations=MOST_ITERATIONS)
+    return _settle(task, program, start, settings, monitor, outcome.iterations)
 
 
 def _first_mesh(problem: Problem, *, flexible: bool) -> Mesh:
-    intervals = PER_TURN if problem.start is None else PER_ARC
+    intervals = PER_HALF_TURN if problem.start is None else PER_ARC
     return Mesh.uniform(len(problem.chain), intervals, flexible=flexible)
 
 

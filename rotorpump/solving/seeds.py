@@ -94,7 +94,8 @@ def _turn(guess: Guess) -> Seed:
         guess.radial,
         guess.radial_speed,
     )
-    return Seed(shifted, (Arc(1, "angle", full),), [full])
+    ends = [math.pi, full]
+    return Seed(shifted, tuple(Arc(1, "angle", end) for end in ends), ends)
 
 
 def rehearse_stronger(rig: Rig, task: SpinUp) -> list[Trial]:

@@ -137,6 +137,9 @@ def bound_rows(problem: Problem, mesh: Mesh, scales: Scales) -> Bounds:
         lengths.limit((slice(None), 1), SHORTEST, np.inf)
     lower = [intervals.lower.ravel(), lengths.lower.ravel()]
     upper = [intervals.upper.ravel(), lengths.upper.ravel()]
+    if problem.keeps_margin:
+        lower.append(np.array([0.0]))
+        upper.append(np.array([1.0]))
     if problem.goal is not None:
         lower.append(np.array([problem.goal.least]))
         upper.append(np.array([np.inf]))

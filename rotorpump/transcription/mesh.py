@@ -75,10 +75,10 @@ class Mesh:
         pieces = np.split(lengths, self.edges[1:-1])
         return Mesh(tuple(p / p.sum() for p in pieces), self.rests, self.flexible)
 
-    def split(self, chosen: NDArray[np.bool_]) -> Mesh:
-        """Divide the chosen intervals into two halves each."""
-        times = 1 + chosen.astype(np.intp)
-        pieces = []
-        for share, count in zip(self.shares, np.split(times, self.edges[1:-1]), strict=True):
-            pieces.append(np.repeat(share / count, count))
-        return Mesh(tuple(pieces), np.repeat(self.rests, times), self.flexible)
+    def split(self, pieces: NDArray[np.intp]) -> Mesh:
+        """Divide each interval into so many equal pieces."""
+        shares = [
+            np.repeat(share / count, count)
+            for share, count in zip(self.shares, np.split(pieces, self.edges[1:-1]), strict=True)
+        ]
+        return Mesh(tuple(shares), np.repeat(self.rests, pieces), self.flexible)

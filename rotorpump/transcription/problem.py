@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from rotorpump.rig.rig import Rig
 from rotorpump.transcription.arcs import Chain
 from rotorpump.transcription.interval import Form
+from rotorpump.transcription.path import FORCE_LIMITED
 
 
 @dataclass(frozen=True)
@@ -79,6 +80,11 @@ class Problem:
     horizon: float | None = None
     goal: Goal | None = None
     closed_momentum: bool = True
+
+    @property
+    def keeps_margin(self) -> bool:
+        """Whether the mass has to keep clear of its stops at the end, if it still moves."""
+        return self.start is not None and self.form.rung == FORCE_LIMITED
 
     @property
     def own_last(self) -> int | None:

@@ -21,7 +21,12 @@ from rotorpump.transcription.nodes import radau_nodes
 from rotorpump.transcription.path import FORCE_LIMITED, INSTANT
 from rotorpump.transcription.problem import Problem
 from rotorpump.transcription.scaling import Scales
-from rotorpump.transcription.terminal import end_kernel, evenness_kernel, length_kernel
+from rotorpump.transcription.terminal import (
+    end_kernel,
+    evenness_kernel,
+    length_kernel,
+    margin_kernel,
+)
 
 Array = NDArray[np.float64]
 
@@ -109,6 +114,8 @@ class Program:
             np.column_stack([least * shares, largest * shares]),
         )
         blocks = [intervals, lengths]
+        if self.problem.keeps_margin:
+            blocks.append(Block(margin_kernel(form), layout.node[-1:], np.zeros((1, 0))))
         if self.problem.goal is not None:
             kernel = end_kernel(self.problem.goal.name, form)
             blocks.append(Block(kernel, self._end_places(at_start=False), np.ones((1, 1))))

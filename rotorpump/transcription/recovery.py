@@ -11,7 +11,7 @@ from rotorpump.physics.equations import contact_force, wheel_speed
 from rotorpump.solution.assembly import trajectory_of
 from rotorpump.solution.trajectory import Trajectory
 from rotorpump.transcription.interval import TIME
-from rotorpump.transcription.mesh import FREE, INNER, OUTER
+from rotorpump.transcription.mesh import INNER, OUTER
 from rotorpump.transcription.nodes import radau_nodes
 from rotorpump.transcription.path import FORCE_LIMITED, SlidePath
 from rotorpump.transcription.program import Program
@@ -24,6 +24,15 @@ def node_marks(program: Program, z: Array) -> Array:
     if program.problem.form.independent == TIME:
         return np.asarray(z[program.layout.node[:, 0]] * program.scales.time)
     return np.asarray(z[program.layout.node[:, 1]])
+
+
+def motion_within(program: Program, z: Array) -> SlidePath:
+    """Return the slide's motion in all intervals at once; times are columns of shape (intervals, n)."""
+    form, layout, scales = program.problem.form, program.layout, program.scales
+    controls = scales.slide_value(form.rung, z[layout.controls])
+    values = (scales.slide_value(k, z[layout.node[:-1, 3 + k]])[:, None] for k in range(form.rung))
+    duration = np.diff(z[layout.node[:, 0]])[:, None] * scales.time
+    return SlidePath(tuple(values), controls[:, :1], controls[:, 1:], duration)
 
 
 def recover_trajectory(program: Program, z: Array) -> Trajectory:
@@ -43,13 +52,7 @@ def recover_trajectory(program: Program, z: Array) -> Trajectory:
         marks = z[layout.node[:, 1]]
         angle = marks[:-1, None] + np.diff(marks)[:, None] * points
         elapsed = z[collocated] * scales.time - edges[:-1, None]
-    controls = scales.slide_value(form.rung, z[layout.controls])
-    path = SlidePath(
-        tuple(scales.slide_value(k, z[layout.node[:-1, 3 + k]])[:, None] for k in range(form.rung)),
-        controls[:, :1],
-        controls[:, 1:],
-        duration,
-    )
+    path = motion_within(program, z)
     radial, slide_speed = path.position(elapsed), path.speed(elapsed)
     speed = wheel_speed(constants, momentum, radial)
     acceleration = path.acceleration(elapsed)
@@ -74,12 +77,21 @@ def _joined(values: Array) -> Array:
     return np.concatenate((values[0, :1], values[:, 1:].ravel()))
 
 
+PRESS = 0.05
+"""Share of its force limit with which the drive presses a resting mass onto its stop."""
+
+
 def _drive_share(program: Program, contact: Array) -> Array:
-    """Force of the drive [N]: what the end stop under a resting mass does not bear."""
+    """Force of the drive [N]: what the end stop under a resting mass does not bear.
+
+    On a stop the split between drive and stop is free. A drive that exactly balanced the load
+    would leave the mass floating in front of its stop, so it presses a little.
+    """
     if program.problem.form.rung != FORCE_LIMITED:
         return contact
     limit = program.problem.rig.radial.force
+    press = PRESS * limit
     rests = program.mesh.rests[:, None]
-    share = np.where(rests == OUTER, np.maximum(contact, 0.0), contact)
-    share = np.where(rests == INNER, np.minimum(contact, 0.0), share)
-    return np.where(rests == FREE, np.clip(share, -limit, limit), share)
+    share = np.where(rests == OUTER, np.maximum(contact, 0.0) + press, contact)
+    share = np.where(rests == INNER, np.minimum(contact, 0.0) - press, share)
+    return np.clip(share, -limit, limit)

@@ -40,6 +40,20 @@ def evenness_kernel() -> Kernel:
     return Kernel.build(z, own, casadi.SX.sym("p", SHARED), own[1] * departure**2)
 
 
+MARGIN = 2e-3
+"""Gap to a stop, in strokes, that a mass moving at its typical speed keeps at the end."""
+
+
+@cache
+def margin_kernel(form: Form) -> Kernel:
+    """Position at the end, a little ahead of the mass; variables: the last node.
+
+    A motion may end while the mass moves, but not in the moment in which it runs into a stop.
+    """
+    z, own = casadi.SX.sym("z", form.node), casadi.SX.sym("q", 0)
+    return Kernel.build(z, own, casadi.SX.sym("p", SHARED), z[3] + MARGIN * z[4])
+
+
 def end_value(name: str, form: Form, node: Any, controls: Any, shared: Any) -> Any:
     """Scaled value of an end quantity: "energy", "speed", "momentum", "angle" or "time".
 

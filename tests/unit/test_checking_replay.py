@@ -44,7 +44,7 @@ def test_true_motion_is_reproduced():
         "replay speed",
         "replay radial",
         "replay radial speed",
-        "arrival speed at stops",
+        "arrival at stops",
     ]
     assert all(check.passed for check in checks.values())
     # the simulation is good to 1e-10, the replay to 1e-9: far inside the tolerance of 1e-3
@@ -127,7 +127,7 @@ class TestStops:
         simulation.state[2:] = [0.2, 0.0]
         simulation.run(lambda _: -40.0, 0.1, rests=True)
         rig, _, trajectory, _ = pump_motion(simulation)
-        assert failures(rig, trajectory) == {"arrival speed at stops"}
+        assert failures(rig, trajectory) == {"arrival at stops"}
 
     def test_a_stop_does_not_pull(self):
         simulation = Simulation(example_rig(), [0.3, 1.0, 0.4, 0.0])
@@ -191,7 +191,7 @@ class TestStops:
         simulation.stroke(0.2)
         rig, _, trajectory, _ = pump_motion(simulation)
         checks = replayed(rig, trajectory)
-        assert "arrival speed at stops" not in checks
+        assert "arrival at stops" not in checks
         assert all(check.passed for check in checks.values())
 
 

@@ -149,6 +149,18 @@ def test_other_numbers_become_floats(kind, field, number):
     assert kept == 1.0
 
 
+@pytest.mark.parametrize(("kind", "field"), NUMBERS)
+@pytest.mark.parametrize("value", [10**400, -(10**400)])
+def test_numbers_beyond_a_float_are_refused(kind, field, value):
+    refuses(kind, field, value)
+
+
+@pytest.mark.parametrize("digits", [400, 5000])
+def test_a_stroke_beyond_a_float_is_refused(digits):
+    with pytest.raises(InputError, match=r"^stroke: must be a number that a float can hold; rec"):
+        build(Slide, stroke=(0.1, 10**digits))
+
+
 @pytest.mark.parametrize(("kind", "field"), PARTS)
 @given(value=st.none() | st.floats() | st.text() | st.just(Rotate()))
 def test_parts_of_the_wrong_kind_are_refused(kind, field, value):

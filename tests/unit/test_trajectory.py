@@ -135,3 +135,18 @@ def test_columns_are_the_quantities_in_order():
     names = {f.name for f in fields(Trajectory)} - {"breaks", "arcs"}
     assert set(Trajectory.quantities()) == names
     assert line.columns()["angle"] is line.angle
+
+
+@pytest.mark.parametrize("nodes", [1, 2])
+def test_a_motion_of_no_duration_is_its_last_node(nodes):
+    rows = {name: np.array([7.0, 9.0 + k])[-nodes:] for k, name in enumerate(SMOOTH)}
+    columns = {name: rows.get(name, np.full(nodes, -1.0)) for name in Trajectory.quantities()}
+    columns["time"] = np.full(nodes, 2.0)
+    breaks = np.arange(nodes)
+    still = Trajectory(**columns, breaks=breaks, arcs=breaks[[0, -1]])
+    for found, times in ((still.at([2.0, 2.0]), 2), (still.at(2.0), 1), (still.sample(50.0), 1)):
+        np.testing.assert_array_equal(found.time, np.full(times, 2.0))
+        for name in Trajectory.quantities()[1:]:
+            np.testing.assert_array_equal(getattr(found, name), np.full(times, columns[name][-1]))
+    with pytest.raises(ValueError, match=r"^time: must lie within 2 and 2; received"):
+        still.at(2.1)

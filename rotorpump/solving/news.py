@@ -1,0 +1,55 @@
+# SPDX-License-Identifier: BSD-3-Clause
+"""News from the solver's iterations, in the units of the task."""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+
+from rotorpump.rig.rig import Rig
+from rotorpump.solution.progress import Progress, Watcher
+from rotorpump.solving.ipopt import Monitor
+from rotorpump.tasks import Pump, Rotate, Task
+from rotorpump.transcription.scaling import Scales
+
+
+@dataclass(frozen=True)
+class Reporter:
+    """Turns scaled objectives into news for a watcher.
+
+    Parameters
+    ----------
+    rig, task : Rig, Task
+        What is being solved.
+    watcher : callable or None
+        What takes the news, if anyone does.
+    """
+
+    rig: Rig
+    task: Task
+    watcher: Watcher | None
+
+    def tell(self, stage: str) -> None:
+        """Announce a stage that has no iterations."""
+        if self.watcher is not None:
+            self.watcher(Progress(stage, 0, math.nan))
+
+    def monitor(self, stage: str, best: float | None = None) -> Monitor | None:
+        """Return what a run of the solver calls in each iteration."""
+        watcher = self.watcher
+        if watcher is None:
+            return None
+
+        def report(iteration: int, objective: float) -> None:
+            watcher(Progress(stage, iteration, self._value(objective), best))
+
+        return report
+
+    def _value(self, objective: float) -> float:
+        scales = Scales.of(self.rig)
+        if isinstance(self.task, Pump):
+            return float(-objective * scales.energy)
+        seconds = float(objective * scales.time)
+        if isinstance(self.task, Rotate):
+            return 2.0 * math.pi / seconds if seconds > 0.0 else math.nan
+        return seconds
