@@ -14,6 +14,7 @@ from rotorpump.rig.friction import AxleFriction
 from rotorpump.rig.rig import Rig
 from rotorpump.rig.slide import Slide
 from rotorpump.rig.wheel import Wheel
+from rotorpump.solution.wording import verdict_lines
 from rotorpump.tasks import Rotate, SpinUp, Task, measure
 
 FACTORS = (1, 2, 4, 8, 16, 32, 64)
@@ -74,6 +75,10 @@ def climb(name: str, rig: Rig, task: Task) -> bool:
             ),
             flush=True,
         )
+        if not solution.success:
+            print(f"  {solution.message}", flush=True)
+        elif not solution.verified:
+            print(*verdict_lines(solution), sep="\n", flush=True)
         good = good and solution.success and solution.verified
     print()
     return good

@@ -18,6 +18,7 @@ from pathlib import Path
 import rotorpump
 from rotorpump.errors import InputError
 from rotorpump.rig.rigfile import read_rig
+from rotorpump.solution.wording import verdict_lines
 from rotorpump.tasks import measure
 
 COLUMNS = "{:<14} {:>12} {:<6} {:>8}  {:<9} {:<9} {:>10} {:>7} {:>8}"
@@ -112,6 +113,10 @@ def run(folder: Path, name: str, reference: Reference) -> Row:
         ),
         flush=True,
     )
+    if not solution.success:
+        print(f"  {solution.message}", flush=True)
+    elif not solution.verified:
+        print(*verdict_lines(solution), sep="\n", flush=True)
     return Row(met, solution.verified, seconds)
 
 

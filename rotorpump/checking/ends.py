@@ -92,8 +92,11 @@ def _periodicity(rig: Rig, trajectory: Trajectory) -> list[Check]:
     checks = [
         _near("one turn", float(angle[-1] - angle[0]), turn, turn),
         _near("periodic momentum", float(momentum[-1]), float(momentum[0]), most),
-        _near("periodic radial", float(radial[-1]), float(radial[0]), rig.radial.length),
     ]
+    if math.isfinite(rig.radial.force) or math.isfinite(rig.radial.speed):
+        # a mass without any limit may jump at the start of each turn as well
+        first, last = float(radial[0]), float(radial[-1])
+        checks.append(_near("periodic radial", last, first, rig.radial.length))
     if not math.isinf(rig.radial.force):
         first, last = (float(trajectory.radial_speed[k]) for k in (0, -1))
         pace = slide_pace(rig, trajectory)

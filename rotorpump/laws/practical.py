@@ -32,8 +32,17 @@ ROTATION_SPEEDS = (1.2, 2.0, 3.5)
 """Starting speeds of a rotation, in units of the least that carries the wheel over the top."""
 
 
-def rehearse(rig: Rig, task: Task) -> list[Trial]:
+def rehearse(rig: Rig, task: Task, *, rounds: int = ROUNDS, coarse: bool = False) -> list[Trial]:
     """Run the law over the grid of leads, then closer around the best; the best trial is first.
+
+    Parameters
+    ----------
+    rig, task : Rig, Task
+        What is to be done.
+    rounds : int, optional
+        Halvings of the step in the search around the best of the grid.
+    coarse : bool, optional
+        Whether a third of the leads in each place is enough (always so for a rotation).
 
     Raises
     ------
@@ -41,11 +50,11 @@ def rehearse(rig: Rig, task: Task) -> list[Trial]:
         If the task cannot begin on this rig.
     """
     attempts = _attempts(rig, task)
-    coarse = GRID[::3] if isinstance(task, Rotate) else GRID
-    trials = [attempt(Leads(a, b)) for a in coarse for b in coarse for attempt in attempts]
+    grid = GRID[::3] if coarse or isinstance(task, Rotate) else GRID
+    trials = [attempt(Leads(a, b)) for a in grid for b in grid for attempt in attempts]
     which = max(range(len(trials)), key=lambda k: _rank(trials[k])) % len(attempts)
-    reach = (coarse[1] - coarse[0]) / 2.0
-    for _ in range(ROUNDS):
+    reach = (grid[1] - grid[0]) / 2.0
+    for _ in range(rounds):
         best = max(trials, key=_rank).run.leads
         for da, db in ((reach, 0.0), (-reach, 0.0), (0.0, reach), (0.0, -reach)):
             nearby = Leads(max(best.bottom + da, 0.0), max(best.turn + db, 0.0))

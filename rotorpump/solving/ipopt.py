@@ -137,6 +137,8 @@ def run_ipopt(
             "ipopt": options,
             "print_time": False,
             "calc_lam_p": False,
+            # A trial point outside the functions' domain is the solver's business: it backs off.
+            "show_eval_warnings": False,
             "iteration_callback": watcher,
             **functions.derivatives,
         },

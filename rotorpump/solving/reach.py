@@ -11,12 +11,14 @@ import math
 from dataclasses import dataclass, replace
 
 import numpy as np
-from scipy.integrate import simpson
+from scipy.integrate import cumulative_trapezoid, simpson
 
+from rotorpump.laws.instantaneous import run_ideal
 from rotorpump.laws.trials import Trial, energy_of, goal_measure
 from rotorpump.physics.constants import Constants
 from rotorpump.physics.friction import friction_torque
 from rotorpump.rig.rig import Rig
+from rotorpump.solution.status import Status
 from rotorpump.solution.trajectory import Trajectory
 from rotorpump.solving.assignment import assign, start_of
 from rotorpump.solving.ipopt import Monitor
@@ -29,6 +31,9 @@ from rotorpump.transcription.problem import Term
 
 DENSE = 1001
 """Samples of a turn whose losses are added up."""
+
+TURN_DURATIONS = (2.0, 3.0, 5.0, 8.0)
+"""Durations of the turns in which a rotation is looked for, in those of a plain fast turn."""
 
 MOST_ARCS = 60
 """Arcs of the longest spin-up that is looked at."""
@@ -69,6 +74,8 @@ def reach_goal(rig: Rig, task: SpinUp, trials: list[Trial], monitor: Monitor | N
         posed = assign(rig, Pump(duration=1.0, start_angle=task.start_angle), seed)
         posed = replace(posed, terms=(Term(name, sign),), start=start_of(rig, task), horizon=None)
         candidate = solve_posed(task, posed, seed, monitor)
+        if candidate.outcome.status is Status.INTERRUPTED:
+            raise KeyboardInterrupt
         if candidate.solved:
             reached = _final(name, candidate.trajectory)
             if reached >= goal:
@@ -100,26 +107,35 @@ def _final(name: str, trajectory: Trajectory) -> float:
 
 
 def reach_rotation(rig: Rig, task: Rotate, monitor: Monitor | None) -> Reach:
-    """Look for the turn that gains the most; if even that one loses, there is no rotation."""
+    """Look for a turn that gains momentum; if even the best one loses, there is no rotation.
+
+    Turns of several durations are looked at: the slower a turn, the less it loses to drag.
+    """
     best: Candidate | None = None
-    for lag in (0.0, 0.25 * math.pi, 0.5 * math.pi):
-        seed = _plain_turn(rig, lag)
-        posed = assign(rig, task, seed)
+    for factor in TURN_DURATIONS:
+        seed = _plain_turn(rig, factor)
         gains = (Term("momentum", -1.0), Term("momentum", 1.0, at_start=True))
-        posed = replace(posed, terms=gains, closed_momentum=False)
+        duration = float(np.interp(2.0 * math.pi, seed.guess.angle, seed.guess.time))
+        posed = replace(
+            assign(rig, task, seed), terms=gains, closed_momentum=False, horizon=duration
+        )
         candidate = solve_posed(task, posed, seed, monitor)
+        if candidate.outcome.status is Status.INTERRUPTED:
+            raise KeyboardInterrupt
         if candidate.solved and (best is None or _gained(candidate) > _gained(best)):
             best = candidate
+        if best is not None and _gained(best) >= 0.0:
+            return Reach(seed_of(task, Guess.from_trajectory(best.trajectory)), best, "")
+    reason = "the rotation cannot be sustained"
     if best is None:
-        return Reach(None, None, "no turn over the top was found that the drive's limits allow")
-    if _gained(best) >= 0.0:
-        return Reach(seed_of(task, Guess.from_trajectory(best.trajectory)), best, "")
+        ideal = run_ideal(rig, task).message
+        return Reach(None, None, f"{reason}, not even by the instantaneous law: {ideal}")
     work, loss = turn_balance(rig, best.trajectory)
     return Reach(
         None,
         best,
-        f"the rotation cannot be sustained: in the best turn found, friction takes {loss:.4g} J"
-        f" and the drive adds {work:.4g} J",
+        f"{reason}: in the best turn found, of {best.trajectory.duration:.3g} s, friction takes"
+        f" {loss:.4g} J and the drive adds {work:.4g} J",
     )
 
 
@@ -128,21 +144,26 @@ def _gained(candidate: Candidate) -> float:
     return float(momentum[-1] ** 2 - momentum[0] ** 2)
 
 
-def _plain_turn(rig: Rig, lag: float) -> Seed:
-    """A turn at twice the least speed, the mass swaying: out on the falling side."""
+def _plain_turn(rig: Rig, factor: float) -> Seed:
+    """A turn that begins fast enough to lose to friction what it must, the mass swaying.
+
+    It is made slower by ``factor`` than a turn at twice the speed that just passes the top.
+    """
     constants = Constants.of(rig)
     inner, outer = rig.radial.stroke
     middle, sway = (inner + outer) / 2.0, 0.4 * rig.radial.length
     inertia = rig.inertia(middle)
-    speed = 2.0 * math.sqrt(4.0 * constants.mass * constants.gravity * outer / inertia)
+    least = math.sqrt(4.0 * constants.mass * constants.gravity * outer / inertia)
     angle = np.linspace(0.0, 2.0 * math.pi, 400)
-    phase = angle - lag
+    slope = -friction_torque(constants, least, 1.0) / least
+    speed = (2.0 * least + slope * (2.0 * math.pi - angle) / inertia) / factor
+    time = cumulative_trapezoid(1.0 / speed, angle, initial=0.0)
     guess = Guess(
-        angle / speed,
+        time,
         angle,
-        np.full_like(angle, inertia * speed),
-        middle - sway * np.sin(phase),
-        -sway * speed * np.cos(phase),
+        inertia * speed,
+        middle - sway * np.sin(angle),
+        -sway * speed * np.cos(angle),
     )
     return seed_of(Rotate(), guess)
 

@@ -105,5 +105,5 @@ def rehearse_stronger(rig: Rig, task: SpinUp) -> list[Trial]:
         slide = replace(
             rig.radial, force=rig.radial.force * factor, speed=rig.radial.speed * factor
         )
-        trials += rehearse(replace(rig, radial=slide), task)[:3]
+        trials += rehearse(replace(rig, radial=slide), task, rounds=0, coarse=True)[:3]
     return trials

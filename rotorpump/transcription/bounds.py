@@ -93,6 +93,8 @@ def _bound_slide(bounds: Bounds, problem: Problem, layout: Layout, scales: Scale
 def _bound_rests(bounds: Bounds, mesh: Mesh, layout: Layout) -> None:
     """Hold the mass on its stop throughout resting intervals."""
     resting = np.flatnonzero(mesh.rests != FREE)
+    if resting.size == 0:
+        return
     seat = np.where(mesh.rests[resting] == OUTER, 1.0, 0.0)
     for side in (resting, resting + 1):
         bounds.limit(layout.node[side, 3], seat, seat)

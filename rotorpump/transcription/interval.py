@@ -19,7 +19,7 @@ from rotorpump.physics.constants import Constants
 from rotorpump.physics.equations import contact_force, momentum_rate, wheel_speed
 from rotorpump.transcription.blocks import Kernel
 from rotorpump.transcription.nodes import radau_nodes
-from rotorpump.transcription.path import FORCE_LIMITED, SPEED_LIMITED, SlidePath
+from rotorpump.transcription.path import FORCE_LIMITED, INSTANT, SPEED_LIMITED, SlidePath
 from rotorpump.transcription.scaling import Scales
 
 TIME, ANGLE = "time", "angle"
@@ -68,7 +68,7 @@ class Form:
         force = self.rung == FORCE_LIMITED
         return {
             "wheel": 2 * self.degree,
-            "path": self.rung,
+            "path": max(self.rung, 1),
             "stroke": self.rung,
             "arrival": 2 * self.degree if self.relaxed else 0,
             "speed": 1 if force else 0,
@@ -128,6 +128,9 @@ def interval_kernel(form: Form) -> Kernel:
         (s.slide_value(k, v) - end) / s.slide(k)
         for k, (v, end) in enumerate(zip(right[WHEEL:], path.end(), strict=True))
     ]
+    if form.rung == INSTANT:
+        # A mass that may jump stays where it is in between, so that no speed is hidden there.
+        joins = [inner[-1] - inner[-2]]
     groups = {"wheel": wheel, "path": joins, "arrival": arrival, "force": force}
     groups["stroke"], groups["speed"] = _between_nodes(form, path, right, c, s)
     rows = [row for name, count in form.rows.items() if count for row in groups[name]]

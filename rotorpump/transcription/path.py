@@ -3,7 +3,8 @@
 
 The ladder of drive limits decides what jumps from interval to interval: the acceleration when the
 force is limited, the speed when only the speed is, the position when neither is. What jumps is
-linear within an interval, so that its limits hold everywhere once they hold at both ends.
+linear within an interval (a position that jumps is constant there), so that its limits hold
+everywhere once they hold at both ends.
 """
 
 from __future__ import annotations

@@ -13,7 +13,7 @@ from rotorpump.solution.trajectory import Trajectory
 from rotorpump.transcription.interval import TIME
 from rotorpump.transcription.mesh import INNER, OUTER
 from rotorpump.transcription.nodes import radau_nodes
-from rotorpump.transcription.path import FORCE_LIMITED, SlidePath
+from rotorpump.transcription.path import FORCE_LIMITED, INSTANT, SlidePath
 from rotorpump.transcription.program import Program
 
 Array = NDArray[np.float64]
@@ -57,23 +57,40 @@ def recover_trajectory(program: Program, z: Array) -> Trajectory:
     speed = wheel_speed(constants, momentum, radial)
     acceleration = path.acceleration(elapsed)
     contact = contact_force(np, constants, angle, speed, radial, acceleration)
-    contact = np.broadcast_to(contact, angle.shape)
-    drive = _drive_share(program, contact)
-    arcs = program.mesh.edges * form.degree
+    columns = [
+        np.broadcast_to(column, angle.shape)
+        for column in (edges[:-1, None] + elapsed, angle, momentum, radial, slide_speed, contact)
+    ]
+    columns.insert(5, _drive_share(program, columns[-1]))
+    *columns, contact = (_joined(column, form.rung) for column in columns)
+    starts = _interval_starts(program)
     return trajectory_of(
         rig,
-        *(
-            _joined(column)
-            for column in (edges[:-1, None] + elapsed, angle, momentum, radial, slide_speed, drive)
-        ),
-        breaks=np.arange(program.mesh.intervals + 1) * form.degree,
-        arcs=arcs,
-        contact=_joined(contact),
+        *columns,
+        breaks=np.unique(np.append(starts, starts[1:] - 1) if form.rung == INSTANT else starts),
+        arcs=starts[program.mesh.edges],
+        contact=contact,
     )
 
 
-def _joined(values: Array) -> Array:
-    """Chain the intervals' points; where two meet, the node holds the value on its left."""
+def _interval_starts(program: Program) -> NDArray[np.intp]:
+    """Nodes at which intervals begin, and the last node, shape (intervals + 1,)."""
+    form = program.problem.form
+    if form.rung != INSTANT:
+        return np.arange(program.mesh.intervals + 1) * form.degree
+    starts = np.arange(program.mesh.intervals + 1) * (form.degree + 1)
+    starts[-1] -= 1
+    return starts
+
+
+def _joined(values: Array, rung: int) -> Array:
+    """Chain the intervals' points.
+
+    Where two intervals meet, one node holds the value on its left; a mass whose position may jump
+    has two nodes there.
+    """
+    if rung == INSTANT:
+        return values.ravel()
     return np.concatenate((values[0, :1], values[:, 1:].ravel()))
 
 
