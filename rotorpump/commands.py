@@ -109,18 +109,29 @@ def run_optimize(arguments: argparse.Namespace) -> int:
 
 
 def _save_comparison(comparison: Comparison, folder: Path) -> tuple[Path, ...]:
+    files = save_comparison(comparison, folder)
+    if comparison.optimal.status is Status.INTERRUPTED:
+        return _without_pictures(files, folder)
     # Matplotlib takes long to load, and is needed for pictures only
     from rotorpump.plotting.pictures import save_comparison_pictures  # noqa: PLC0415
 
-    files = save_comparison(comparison, folder)
     return *files, *save_comparison_pictures(comparison, folder)
 
 
 def _save_solution(solution: Solution, folder: Path, sample: float | None) -> tuple[Path, ...]:
+    files = save_solution(solution, folder, sample)
+    if solution.status is Status.INTERRUPTED:
+        return _without_pictures(files, folder)
     from rotorpump.plotting.pictures import save_solution_pictures  # noqa: PLC0415
 
-    files = save_solution(solution, folder, sample)
     return *files, *save_solution_pictures(solution, folder)
+
+
+def _without_pictures(files: tuple[Path, ...], folder: Path) -> tuple[Path, ...]:
+    """Leave no pictures of an earlier run; who interrupts does not want to wait for new ones."""
+    for name in ("compare.png", "motion.png", "profiles.png"):
+        (folder / name).unlink(missing_ok=True)
+    return files
 
 
 def _tell_written(files: Sequence[Path]) -> None:

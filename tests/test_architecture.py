@@ -39,7 +39,7 @@ LAZY = {
     # takes long to load.
     ("rotorpump.solution.solution", "rotorpump.solution.summary"),
     ("rotorpump.solution.solution", "rotorpump.solution.storage"),
-    ("rotorpump.solution.solution", "rotorpump.plotting.motion"),
+    ("rotorpump.solution.solution", "rotorpump.plotting.profiles"),
     ("rotorpump.studies.comparison", "rotorpump.studies.comparison_table"),
     ("rotorpump.studies.comparison", "rotorpump.plotting.compare"),
     ("rotorpump.commands", "rotorpump.plotting.pictures"),

@@ -11,7 +11,7 @@ from matplotlib.figure import Figure
 
 from rotorpump.plotting.compare import plot_comparison
 from rotorpump.plotting.motion import plot_motion
-from rotorpump.plotting.path import plot_path
+from rotorpump.plotting.profiles import plot_profiles
 from rotorpump.solution.files import replacing
 from rotorpump.solution.solution import Solution
 from rotorpump.studies.comparison import Comparison
@@ -21,7 +21,7 @@ RESOLUTION = 130
 
 
 def save_comparison_pictures(comparison: Comparison, folder: Path) -> tuple[Path, ...]:
-    """Write ``compare.png``, and ``motion.png`` and ``path.png`` of the best motion.
+    """Write ``compare.png``, and ``motion.png`` and ``profiles.png`` of the best motion.
 
     Parameters
     ----------
@@ -46,21 +46,21 @@ def save_comparison_pictures(comparison: Comparison, folder: Path) -> tuple[Path
 
 
 def save_solution_pictures(solution: Solution, folder: Path) -> tuple[Path, ...]:
-    """Write ``motion.png`` and ``path.png``, or remove earlier ones if there is no trajectory now.
+    """Write ``motion.png`` and ``profiles.png``; without a trajectory, remove earlier ones.
 
     Raises
     ------
     InputError
         If a file cannot be written.
     """
-    motion, path = folder / "motion.png", folder / "path.png"
+    motion, profiles = folder / "motion.png", folder / "profiles.png"
     if solution.trajectory is None:
-        for stale in (motion, path):
+        for stale in (motion, profiles):
             stale.unlink(missing_ok=True)
         return ()
-    save_picture(plot_motion(solution)[0], motion)
-    save_picture(plot_path(solution), path)
-    return motion, path
+    save_picture(plot_motion(solution), motion)
+    save_picture(plot_profiles(solution)[0], profiles)
+    return motion, profiles
 
 
 def save_picture(axes: Axes, path: Path) -> None:

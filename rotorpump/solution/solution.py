@@ -135,6 +135,6 @@ class Solution:
 
     def plot(self, axes: Any = None) -> Any:
         """Draw energy, position and force against time; return the Matplotlib axes."""
-        from rotorpump.plotting.motion import plot_motion  # noqa: PLC0415
+        from rotorpump.plotting.profiles import plot_profiles  # noqa: PLC0415
 
-        return plot_motion(self, axes)
+        return plot_profiles(self, axes)

@@ -46,13 +46,17 @@ def assembled(functions, x, p, lam_f, lam_g):
     return [value, rows, gradient, jacobian, derivatives["hess_lag"](x, p, lam_f, lam_g)]
 
 
+def dense(matrix):
+    return np.array(casadi.DM(matrix))
+
+
 def compare(functions, parameters, points, rng):
     expected = differentiated(functions)
     for x in points:
         lam = rng.normal(), rng.normal(size=functions.program["g"].numel())
         ours = assembled(functions, x, parameters, *lam)
-        for mine, theirs in zip(ours, expected(x, parameters, *lam), strict=True):
-            mine, theirs = np.array(casadi.DM(mine)), np.array(casadi.DM(theirs))
+        pairs = zip(ours, expected(x, parameters, *lam), strict=True)
+        for mine, theirs in ((dense(a), dense(b)) for a, b in pairs):
             assert np.isfinite(theirs).all()
             scale = max(1.0, float(np.abs(theirs).max()))
             np.testing.assert_allclose(mine, theirs, rtol=CLOSE, atol=CLOSE * scale)

@@ -117,7 +117,7 @@ def test_attribution_is_asked_for(place, answers):
 def test_compare_writes_its_files(place, answers, capsys):
     assert cli.main(["compare", "--out", "new/results"]) == 0
     written = place / "new" / "results"
-    names = ["compare.json", "compare.png", "motion.png", "path.png", "trajectory.csv"]
+    names = ["compare.json", "compare.png", "motion.png", "profiles.png", "trajectory.csv"]
     assert sorted(path.name for path in written.iterdir()) == names
     printed = capsys.readouterr()
     assert "overstatement" in printed.out
@@ -126,7 +126,7 @@ def test_compare_writes_its_files(place, answers, capsys):
 
 def test_optimize_writes_its_files(place, answers):
     assert cli.main(["optimize", "--out", "results", "--sample", "20"]) == 0
-    names = ["motion.png", "path.png", "solution.json", "trajectory.csv"]
+    names = ["motion.png", "profiles.png", "solution.json", "trajectory.csv"]
     assert sorted(path.name for path in (place / "results").iterdir()) == names
     document = json.loads((place / "results" / "solution.json").read_text(encoding="utf-8"))
     assert document["trajectory"]["time"][:3] == pytest.approx([0.0, 0.05, 0.1])

@@ -16,9 +16,9 @@ from simulated_motion import example_rig
 from rotorpump.errors import InputError
 from rotorpump.plotting.compare import plot_comparison
 from rotorpump.plotting.look import curves
-from rotorpump.plotting.motion import plot_motion
-from rotorpump.plotting.path import emphasis, plot_path
+from rotorpump.plotting.motion import emphasis, plot_motion
 from rotorpump.plotting.pictures import save_comparison_pictures, save_solution_pictures
+from rotorpump.plotting.profiles import plot_profiles
 from rotorpump.rig.slide import Slide
 from rotorpump.solution.assembly import trajectory_of
 from rotorpump.solution.objective import Objective
@@ -148,7 +148,7 @@ def test_steady_rotation_is_drawn_over_the_angle():
 
 def test_the_motion_shows_five_quantities_and_the_limits():
     solution = made_solution()
-    axes = plot_motion(solution)
+    axes = plot_profiles(solution)
     assert [flat(panel.get_ylabel()) for panel in axes] == [
         "wheel angle from hanging [rad]",
         "energy above rest [J]",
@@ -170,12 +170,12 @@ def test_the_motion_shows_five_quantities_and_the_limits():
 
 def test_limits_that_are_not_there_are_not_drawn():
     solution = made_solution(rig=example_rig(radial=Slide(stroke=(0.2, 0.4), speed=0.8)))
-    axes = plot_motion(solution)
+    axes = plot_profiles(solution)
     assert level_lines(axes[4]) == []
     assert axes[4].get_title(loc="right") == ""
 
 
-@pytest.mark.parametrize("plot", [plot_motion, plot_path])
+@pytest.mark.parametrize("plot", [plot_profiles, plot_motion])
 def test_no_trajectory_no_picture(plot):
     with pytest.raises(InputError, match="solution: must have a trajectory; received 'FAILED'"):
         plot(unsolved(Status.FAILED))
@@ -183,12 +183,12 @@ def test_no_trajectory_no_picture(plot):
 
 def test_the_motion_refuses_too_few_axes():
     with pytest.raises(InputError, match="axes: must be 5 Axes; received 1"):
-        plot_motion(made_solution(), Figure().subplots(1, 1, squeeze=False)[:, 0])
+        plot_profiles(made_solution(), Figure().subplots(1, 1, squeeze=False)[:, 0])
 
 
 def test_the_path_is_where_the_mass_is():
     solution = made_solution()
-    axes = plot_path(solution)
+    axes = plot_motion(solution)
     late = next(c for c in axes.collections if isinstance(c, LineCollection))
     last = late.get_segments()[-1][-1]
     motion = solution.trajectory
@@ -223,14 +223,14 @@ def test_a_motion_without_duration_can_be_drawn():
     still = [0.0, 0.0]
     point = trajectory_of(rig, still, [0.3, 0.3], still, [0.4, 0.4], still, still, [0, 1], [0, 1])
     solution = made_solution(trajectory=point)
-    plot_path(solution)
     plot_motion(solution)
+    plot_profiles(solution)
     plot_comparison(made_comparison(optimal=solution))
 
 
 def test_pictures_are_written_whole(tmp_path):
     written = save_comparison_pictures(made_comparison(), tmp_path)
-    assert [path.name for path in written] == ["compare.png", "motion.png", "path.png"]
+    assert [path.name for path in written] == ["compare.png", "motion.png", "profiles.png"]
     assert sorted(tmp_path.iterdir()) == sorted(written)
     for path in written:
         assert path.read_bytes().startswith(PNG)

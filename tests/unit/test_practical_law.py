@@ -14,7 +14,7 @@ from scipy.integrate import trapezoid
 
 from rotorpump.errors import InputError
 from rotorpump.laws.instantaneous import run_ideal
-from rotorpump.laws.lead import Leads, LeadRun, controller_step, run_leads
+from rotorpump.laws.lead import LeadRun, Leads, controller_step, run_leads
 from rotorpump.laws.practical import run_practical, sampled_trajectory
 from rotorpump.laws.trials import (
     begin,
@@ -69,7 +69,7 @@ def test_limits_hold_at_every_step(rig, angle, bottom, turn):
 
 
 def _overloaded(rig: Rig, run: LeadRun) -> bool:
-    angle, momentum, radial, _ = run.states
+    _, momentum, radial, _ = run.states
     spin = momentum / (rig.wheel.inertia + rig.mass * radial**2)
     load = rig.mass * (rig.radial.stroke[1] * spin**2 + rig.gravity)
     return bool(load.max() > rig.radial.force)

@@ -100,7 +100,7 @@ def consistent_variables(program: Program, seed: int) -> np.ndarray:
     rng = np.random.default_rng(seed)
     form, layout, scales = program.problem.form, program.layout, program.scales
     z = program.variable_bounds.clip(random_variables(program, rng) * 0.3)
-    first, momentum = layout.collocated(form)
+    first, _ = layout.collocated(form)
     points = radau_nodes(form.degree).points
     if form.independent == TIME:
         z[layout.node[:, 0]] = program.mesh.node_times([0.5, 1.1, 1.8])
@@ -198,6 +198,8 @@ def test_stop_only_pushes_and_the_drive_keeps_its_limit(rest, angle, sign):
     assert np.all(np.abs(contact) > 3.0)
     assert np.all(sign * (contact - trajectory.radial_force) > 0.0)
     assert np.abs(trajectory.radial_force).max() <= 3.0
+    # and the drive presses the mass onto its stop rather than off it
+    assert np.all(sign * trajectory.radial_force < 0.0)
 
 
 def test_free_mass_is_carried_by_the_drive_alone():

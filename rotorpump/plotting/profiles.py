@@ -1,0 +1,78 @@
+# SPDX-License-Identifier: BSD-3-Clause
+"""One motion against time, with the limits of its slide."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+from matplotlib.axes import Axes
+
+from rotorpump.errors import InputError
+from rotorpump.plotting.look import INK, OPTIMAL, curves, draw, dress, mark_limits, stacked
+from rotorpump.quantities import QUANTITIES
+from rotorpump.solution.solution import Solution
+from rotorpump.solution.trajectory import Trajectory
+from rotorpump.solution.wording import quantity, task_words
+
+NAMES = ("angle", "energy", "radial", "radial_speed", "radial_force")
+"""Quantities from top to bottom."""
+
+
+def plot_profiles(solution: Solution, axes: Sequence[Axes] | None = None) -> tuple[Axes, ...]:
+    """Draw wheel angle, energy, and position, speed and drive force of the mass against time.
+
+    Parameters
+    ----------
+    solution : Solution
+        A solution with a trajectory.
+    axes : sequence of Axes, length 5, optional
+        Where to draw; in a new figure by default.
+
+    Returns
+    -------
+    tuple of Axes
+        One for each quantity, with the limits of the slide as lines.
+
+    Raises
+    ------
+    InputError
+        If the solution has no trajectory, or the number of axes is not 5.
+    """
+    trajectory = motion_of(solution)
+    panels = stacked(len(NAMES), 10.0) if axes is None else tuple(axes)
+    if len(panels) != len(NAMES):
+        raise InputError("axes", f"must be {len(NAMES)} Axes", len(panels))
+    time, *columns = curves(trajectory, ("time", *NAMES))
+    for panel, name, column in zip(panels, NAMES, columns, strict=True):
+        draw(panel, time, column, OPTIMAL, QUANTITIES[name].words)
+        dress(panel, name)
+    slide = solution.rig.radial
+    mark_limits(panels[2], slide.stroke, "ends of the stroke")
+    mark_limits(panels[3], (-slide.speed, slide.speed), "speed limit")
+    mark_limits(panels[4], (-slide.force, slide.force), "force limit")
+    panels[-1].set_xlabel(QUANTITIES["time"].label, color=INK)
+    panels[0].set_title(headline(solution), loc="left", fontsize="medium", color=INK)
+    return panels
+
+
+def motion_of(solution: Solution) -> Trajectory:
+    """Return the trajectory of a solution.
+
+    Raises
+    ------
+    InputError
+        If it has none.
+    """
+    if solution.trajectory is None:
+        raise InputError("solution", "must have a trajectory", solution.status.name)
+    return solution.trajectory
+
+
+def headline(solution: Solution) -> str:
+    """Return task, value and standing of a solution."""
+    objective = solution.objective
+    if not solution.success:
+        return f"{task_words(solution.task)}\nlast iterate ({solution.status.name}), no solution"
+    standing = "verified" if solution.verified else "NOT VERIFIED"
+    value = quantity(objective.value, objective.unit)
+    return f"{task_words(solution.task)}\n{objective.name} {value}, {standing}"
