@@ -1,5 +1,5 @@
 # SPDX-License-Identifier: BSD-3-Clause
-"""Raise the limits of the drive step by step, and watch the optimum tend to the ideal law."""
+"""Raise the limits of the drive step by step, and see the optimum come near the ideal law."""
 
 from __future__ import annotations
 

@@ -10,6 +10,9 @@ from rotorpump.errors import InputError
 from rotorpump.quantities import choice, finite, positive
 from rotorpump.rig.rig import Rig
 
+BALANCED = 1e-9
+"""Distance from hanging or upright [rad] below which a still wheel is balanced."""
+
 
 @dataclass(frozen=True, kw_only=True)
 class Start:
@@ -54,11 +57,11 @@ class Start:
             raise InputError(
                 "start_radial", f"must lie within the stroke {low:g} to {high:g}", self.start_radial
             )
-        if self.start_speed == 0.0 and math.sin(self.start_angle) == 0.0:
+        if self.start_speed == 0.0 and abs(math.sin(self.start_angle)) < BALANCED:
             raise InputError(
                 "start_angle",
-                "must differ from 0 when start_speed is 0 (a wheel that hangs still feels no"
-                " torque from a radial move)",
+                "must differ from 0 and from half a turn when start_speed is 0 (a balanced wheel"
+                " feels no torque from a radial move)",
                 self.start_angle,
             )
 

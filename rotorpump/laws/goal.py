@@ -45,11 +45,6 @@ class Goal:
         enough = instant.energy(self.constants) >= self.energy
         return enough or instant.pace(self.constants) >= self.speed
 
-    def met_at_start(self, start: Instant) -> bool:
-        """Whether nothing is left to do; a wheel that leaves the top outward has passed it."""
-        over = abs(start.angle) == math.pi and start.angle * start.momentum > 0.0
-        return self.met_at(start) or (self.full_turn and over)
-
     def met_by(self, stretch: Stretch) -> bool:
         """Whether the end of this stretch is the goal.
 

@@ -18,6 +18,7 @@ from rotorpump.laws.ideal_rotation import rotate_ideally
 from rotorpump.laws.ideal_spin_up import spin_up_ideally
 from rotorpump.laws.pointwise import pointwise_preference
 from rotorpump.laws.stretch import End, Instant, trajectory_along
+from rotorpump.physics.beginning import check_beginning
 from rotorpump.physics.constants import Constants
 from rotorpump.rig.rig import Rig
 from rotorpump.solution.law_run import LawRun
@@ -58,7 +59,7 @@ def run_ideal(rig: Rig, task: Task, *, objective: str | None = None) -> LawRun:
     wanted = measure(task, objective)
     if isinstance(task, Rotate):
         return rotate_ideally(rig, wanted)
-    task.check(rig)
+    check_beginning(rig, task)
     radial = task.radial_in(rig)
     momentum = rig.inertia(radial) * task.start_speed
     start = Instant(0.0, task.start_angle, momentum, radial)

@@ -109,6 +109,9 @@ def _drive_force(c: Constants, drive: Any, state: Any, goal: Any, step: Any) -> 
     lean = c.gravity * casadi.cos(angle)
     here = radial * wheel_speed(c, momentum, radial) ** 2 + lean
     there = goal * wheel_speed(c, momentum, goal) ** 2 + lean
+    middle = radial + 0.5 * step * slide_speed
+    halfway = angle + 0.5 * step * wheel_speed(c, momentum, radial)
+    load = middle * wheel_speed(c, momentum, middle) ** 2 + c.gravity * casadi.cos(halfway)
     outward = casadi.if_else(goal > radial, 1.0, -1.0)
     room = casadi.fabs(goal - radial)
     approach = outward * slide_speed
@@ -121,7 +124,7 @@ def _drive_force(c: Constants, drive: Any, state: Any, goal: Any, step: Any) -> 
     pace = casadi.fmax(casadi.sqrt(spare) - gain, 0.0)
     landing = casadi.fmax(2.0 * room / step - approach, 0.0)
     wanted = outward * casadi.fmin(casadi.fmin(drive[0], pace), landing)
-    force = c.mass * ((wanted - slide_speed) / step - here)
+    force = c.mass * ((wanted - slide_speed) / step - load)
     return casadi.fmax(-drive[1], casadi.fmin(drive[1], force))
 
 

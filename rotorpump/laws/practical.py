@@ -11,6 +11,7 @@ from numpy.typing import NDArray
 
 from rotorpump.laws.lead import LeadRun, Leads
 from rotorpump.laws.trials import Trial, try_pump, try_rotation, try_spin_up
+from rotorpump.physics.beginning import check_beginning
 from rotorpump.physics.constants import Constants
 from rotorpump.physics.equations import contact_force, wheel_speed
 from rotorpump.rig.rig import Rig
@@ -18,7 +19,7 @@ from rotorpump.solution.assembly import trajectory_of
 from rotorpump.solution.law_run import LawRun
 from rotorpump.solution.objective import Objective
 from rotorpump.solution.trajectory import Trajectory
-from rotorpump.tasks import Pump, Rotate, SpinUp, Task, measure
+from rotorpump.tasks import Pump, Rotate, Task, measure
 
 Array = NDArray[np.float64]
 
@@ -76,7 +77,7 @@ def _attempts(rig: Rig, task: Task) -> list[Callable[[Leads], Trial]]:
         least = math.sqrt(weight / rig.inertia(constants.outer))
         speeds = [factor * least for factor in ROTATION_SPEEDS]
         return [lambda leads, speed=speed: try_rotation(rig, leads, speed) for speed in speeds]
-    task.check(rig)
+    check_beginning(rig, task)
     if isinstance(task, Pump):
         return [lambda leads: try_pump(rig, task, leads)]
     return [lambda leads: try_spin_up(rig, task, leads)]
@@ -105,7 +106,8 @@ def run_practical(rig: Rig, task: Task, *, objective: str | None = None) -> LawR
     InputError
         If the task cannot begin on this rig, or has no such objective.
     """
-    return best_run(rig, task, rehearse(rig, task), objective=objective)
+    wanted = measure(task, objective)
+    return best_run(rig, task, rehearse(rig, task), objective=wanted.name)
 
 
 def best_run(rig: Rig, task: Task, trials: list[Trial], *, objective: str | None = None) -> LawRun:

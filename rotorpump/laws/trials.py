@@ -67,8 +67,16 @@ class Trial:
 
 
 def energy_of(rig: Rig, states: Array) -> Array:
-    """Energy above rest of sampled states [J]."""
-    return np.asarray(energy_above_rest(np, Constants.of(rig), *states))
+    """Energy above rest of sampled states [J].
+
+    A slide without any limit moves within one step of the controller; such a speed means nothing.
+    """
+    angle, momentum, radial, slide_speed = states
+    if math.isinf(rig.radial.speed) and math.isinf(rig.radial.force):
+        slide_speed = np.zeros_like(slide_speed)
+    return np.asarray(
+        energy_above_rest(np, Constants.of(rig), angle, momentum, radial, slide_speed)
+    )
 
 
 def begin(rig: Rig, task: Pump | SpinUp) -> tuple[float, float, float, float]:
@@ -113,7 +121,7 @@ def try_spin_up(rig: Rig, task: SpinUp, leads: Leads) -> Trial:
     stale = math.ceil(STALE * swing / step)
 
     def done(states: Array) -> bool:
-        if np.any(measure(states) >= goal):
+        if np.any(measure(states[:, 1:]) >= goal):
             return True
         energy = energy_of(rig, states)
         if energy.size <= 2 * stale:
@@ -123,12 +131,10 @@ def try_spin_up(rig: Rig, task: SpinUp, leads: Leads) -> Trial:
     steps = math.ceil(LONGEST_SPIN_UP * swing / step)
     run = run_leads(rig, begin(rig, task), leads, step, steps, done=done)
     values = measure(run.states)
-    met = np.flatnonzero(values >= goal)
+    met = np.flatnonzero(values[1:] >= goal) + 1
     if met.size == 0:
-        return Trial(run, math.nan, float(values.max()) - 1e12, slams(rig, run))
+        return Trial(run, math.nan, float(values.max()), slams(rig, run))
     k = int(met[0])
-    if k == 0:
-        return Trial(run.cut(0), 0.0, 0.0, False)
     share = (goal - values[k - 1]) / (values[k] - values[k - 1])
     time = float((k - 1 + share) * step)
     run = run.cut(k)

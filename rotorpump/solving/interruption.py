@@ -28,10 +28,10 @@ def heed_interrupts() -> Iterator[None]:
     Outside the main thread, where signals cannot be handled, it changes nothing. A second Ctrl-C
     acts as usual.
     """
-    _asked.clear()
     if threading.current_thread() is not threading.main_thread():
         yield
         return
+    _asked.clear()
     before = signal.getsignal(signal.SIGINT)
 
     def remember(number: int, frame: FrameType | None) -> None:

@@ -162,10 +162,10 @@ def run_ipopt(
             ubg=program.row_bounds.upper,
             **given,
         )
+        stopped = interrupted()
     if watcher.failure is not None:
         raise watcher.failure
-    statistics = solver.stats()
-    word = str(statistics["return_status"])
+    word = "User_Requested_Stop" if stopped else str(solver.stats()["return_status"])
     return Outcome(
         STATUSES.get(word, Status.FAILED),
         word,
@@ -173,7 +173,7 @@ def run_ipopt(
         float(result["f"]),
         np.array(result["lam_x"]).ravel(),
         np.array(result["lam_g"]).ravel(),
-        watcher.iteration,
+        max(watcher.iteration, 0),
         time.perf_counter() - began,
     )
 
@@ -221,7 +221,7 @@ class _Watcher(casadi.Callback):  # type: ignore[misc]
         self.construct("watcher", {})
 
     def get_n_in(self) -> int:
-        """Inputs of the callback: the solver's outputs."""
+        """Count the callback's inputs, which are the solver's outputs."""
         return int(casadi.nlpsol_n_out())
 
     def get_n_out(self) -> int:
@@ -246,7 +246,7 @@ class _Watcher(casadi.Callback):  # type: ignore[misc]
         try:
             if self._monitor is not None:
                 self._monitor(self.iteration, float(arguments[1]))
-        except BaseException as error:  # noqa: BLE001 - the solver would swallow it
+        except BaseException as error:
             self.failure = error
             return [1]
         return [1 if interrupted() else 0]

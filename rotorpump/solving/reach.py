@@ -145,7 +145,7 @@ def _gained(candidate: Candidate) -> float:
 
 
 def _plain_turn(rig: Rig, factor: float) -> Seed:
-    """A turn that begins fast enough to lose to friction what it must, the mass swaying.
+    """Make up a turn that begins fast enough to lose to friction what it must.
 
     It is made slower by ``factor`` than a turn at twice the speed that just passes the top.
     """

@@ -172,4 +172,6 @@ def find_rests(program: Program, z: Array) -> NDArray[np.intp]:
     outside = still & (position[:-1] > 1.0 - SEAT) & (position[1:] > 1.0 - SEAT)
     inside = still & (position[:-1] < SEAT) & (position[1:] < SEAT)
     rests = np.where(outside, OUTER, np.where(inside, INNER, FREE))
+    if program.problem.start is not None and position[0] not in (0.0, 1.0):
+        rests[0] = FREE
     return rests.astype(np.intp)

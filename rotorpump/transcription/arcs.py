@@ -41,7 +41,7 @@ Chain = tuple[Arc, ...]
 
 
 def signature(chain: Chain) -> str:
-    """The arcs' ends in a word; motions with the same one have the same sequence of events."""
+    """Return the arcs' ends in a word; it tells one sequence of events from another."""
     return "".join(arc.letter for arc in chain)
 
 
@@ -78,6 +78,10 @@ def cut_into_arcs(guess: Guess, *, final_angle: float | None = None) -> tuple[Ch
         direction = chain[-1].direction
         chain.pop()
         ends.pop()
+    while final_angle is not None and chain and abs(chain[-1].angle - final_angle) < 1e-9:
+        # Samples that end a little past the final angle have passed it as an event already.
+        chain.pop()
+        ends.pop()
     last = Arc(direction, "free") if final_angle is None else Arc(direction, "angle", final_angle)
     return (*chain, last), [*ends, duration]
 
@@ -88,7 +92,7 @@ def _first_direction(guess: Guess) -> int:
 
 
 def _events(guess: Guess) -> list[tuple[float, float]]:
-    """Times of standstills (angle not a number) and of passages through multiples of π."""
+    """List times of standstills (angle not a number) and of passages through multiples of π."""
     events: list[tuple[float, float]] = []
     time, angle, momentum = guess.time, guess.angle, guess.momentum
     flips = np.flatnonzero(

@@ -137,6 +137,8 @@ def bound_rows(problem: Problem, mesh: Mesh, scales: Scales) -> Bounds:
     else:
         lengths.limit((slice(None), 0), 0.0, 0.0)
         lengths.limit((slice(None), 1), SHORTEST, np.inf)
+        # The lengths of an arc sum to the arc: its last one follows from the others.
+        lengths.limit((mesh.edges[1:] - 1, 0), -np.inf, np.inf)
     lower = [intervals.lower.ravel(), lengths.lower.ravel()]
     upper = [intervals.upper.ravel(), lengths.upper.ravel()]
     if problem.keeps_margin:

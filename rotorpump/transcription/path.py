@@ -45,7 +45,7 @@ class SlidePath:
     duration: Any
 
     def _derivative(self, order: int, elapsed: Any) -> Any:
-        """Derivative of this order of the position after ``elapsed`` seconds."""
+        """Differentiate the position so many times, after ``elapsed`` seconds."""
         rung = len(self.start)
         steps = rung - order
         if steps < 0:

@@ -149,8 +149,10 @@ class Program:
         return np.column_stack([nodes[:-1], nodes[1:], starts, ends])
 
     def _end_places(self, *, at_start: bool) -> NDArray[np.intp]:
-        k = 0 if at_start else -1
-        return np.concatenate([self.layout.node[k], self.layout.controls[k]])[None, :]
+        # The outer one of the two controls comes last.
+        if at_start:
+            return np.concatenate([self.layout.node[0], self.layout.controls[0, ::-1]])[None, :]
+        return np.concatenate([self.layout.node[-1], self.layout.controls[-1]])[None, :]
 
     def start_from(self, guess: Guess, ends: Sequence[float]) -> Array:
         """Scaled variables of a guess whose arcs end at the given times (or angles)."""

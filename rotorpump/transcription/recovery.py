@@ -27,7 +27,7 @@ def node_marks(program: Program, z: Array) -> Array:
 
 
 def motion_within(program: Program, z: Array) -> SlidePath:
-    """Return the slide's motion in all intervals at once; times are columns of shape (intervals, n)."""
+    """Return the slide's motion in all intervals at once, for times of shape (intervals, n)."""
     form, layout, scales = program.problem.form, program.layout, program.scales
     controls = scales.slide_value(form.rung, z[layout.controls])
     values = (scales.slide_value(k, z[layout.node[:-1, 3 + k]])[:, None] for k in range(form.rung))

@@ -11,6 +11,7 @@ import pytest
 from posed_programs import rig_on, swing_program, turn_program
 
 from rotorpump.rig.slide import Slide
+from rotorpump.solving.routes import find_rests
 from rotorpump.transcription.bounds import Bounds
 from rotorpump.transcription.mesh import FREE, INNER, OUTER
 from rotorpump.transcription.problem import Goal, Start
@@ -64,9 +65,14 @@ def test_start_is_given(rung):
 
 def test_start_near_its_stop_stays_where_it_is():
     # A start a hair's breadth from the stop is the user's: no resting interval may move it.
-    program = swing_program(rests={0: OUTER})
+    program = swing_program()
     start = replace(program.problem.start, radial=0.4 - 1e-4)
     program = replace(program, problem=replace(program.problem, start=start))
+    z = np.zeros(program.layout.variables)
+    z[program.layout.node[:, 3]] = 1.0
+    rests = find_rests(program, program.variable_bounds.clip(z))
+    assert np.all(rests[1:] == OUTER)
+    program = replace(program, mesh=program.mesh.with_rests(rests, flexible=True))
     scaled = program.scales.scale_slide(0, start.radial)
     assert variable_range(program, program.layout.node[0, 3]) == pytest.approx((scaled, scaled))
 
@@ -190,9 +196,13 @@ def test_rows_of_relaxed_stops_are_one_sided():
 
 
 def test_lengths_are_nominal_or_flexible():
-    lower, upper = length_ranges(swing_program(flexible=False))
-    assert np.all(lower[:, 0] == 0.0)
-    assert np.all(upper[:, 0] == 0.0)
+    program = swing_program(flexible=False)
+    lower, upper = length_ranges(program)
+    last = program.mesh.edges[1:] - 1
+    # an arc's last length follows from the others
+    assert np.all(np.isinf(lower[last, 0]))
+    assert np.all(np.delete(lower[:, 0], last) == 0.0)
+    assert np.all(np.delete(upper[:, 0], last) == 0.0)
     assert np.all(lower[:, 1] > 0.0)
     assert np.all(upper[:, 1] == np.inf)
     program = swing_program(flexible=True, per_arc=2)

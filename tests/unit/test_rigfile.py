@@ -124,7 +124,7 @@ def test_every_kind_of_task(table, task):
         ("duration = 8.0", "", "rig.toml [task]: duration: is required; received"),
         ("duration = 8.0", "duration = 8\nlength = 1", "length: is unknown here; allowed: kind,"),
         ("start_angle = 0.3", "start_angle = 4", "[task]: start_angle: must lie within -pi and pi"),
-        ("start_angle = 0.3", "start_angle = 0", "[task]: start_angle: must differ from 0 when"),
+        ("start_angle = 0.3", "start_angle = 0", "[task]: start_angle: must differ from 0 and"),
         ("start_angle = 0.3", "start_angle = 1\nstart_radial = 0.5", "start_radial: must lie with"),
     ],
 )
