@@ -7,6 +7,7 @@ Axis labels, CSV headings and tables take their units from here, so that each ha
 from __future__ import annotations
 
 import math
+import operator
 from collections.abc import Sequence
 from dataclasses import dataclass
 from numbers import Real
@@ -125,5 +126,6 @@ def _printable(value: Real) -> object:
     try:
         repr(value)
     except ValueError:
-        return f"a number of {abs(math.floor(value)).bit_length()} bits"
+        size: int = operator.index(math.floor(value)).bit_length()
+        return f"a number of {size} bits"
     return value

@@ -27,6 +27,9 @@ Array = NDArray[np.float64]
 CHUNK = 256
 """Steps that one call of the compiled loop makes."""
 
+MOVE_STEPS = 16
+"""Steps that a move from end to end takes at least; a sampled controller needs some to brake."""
+
 TINY = 1e-9
 BRAKE_SHARE = 0.9
 """Share of the available braking that the law plans with; the rest is reserve."""
@@ -211,7 +214,7 @@ def run_leads(
     Parameters
     ----------
     rig : Rig
-        The rig; infinite limits are taken as those that move the mass within one step.
+        The rig; of a drive that is faster, only as much is used as the sampling can follow.
     start : tuple of float
         Angle [rad], momentum [kg m2/s], position [m] and speed [m/s] of the mass.
     leads : Leads
@@ -225,8 +228,8 @@ def run_leads(
     """
     slide = rig.radial
     drive = (
-        min(slide.speed, slide.length / step),
-        min(slide.force, 4.0 * rig.mass * slide.length / step**2),
+        min(slide.speed, 2.0 * slide.length / (MOVE_STEPS * step)),
+        min(slide.force, 4.0 * rig.mass * slide.length / (MOVE_STEPS * step) ** 2),
     )
     constant = [
         np.repeat(np.array(values, dtype=float)[:, None], CHUNK, axis=1)

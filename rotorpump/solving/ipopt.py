@@ -55,7 +55,7 @@ class Settings:
     barrier: float = 1.0
     tolerance: float = 1e-7
     iterations: int = 500
-    seconds: float = 60.0
+    seconds: float = 30.0
     verbose: bool = False
 
 

@@ -8,7 +8,6 @@ relaxed route first lets a relaxed complementarity find it.
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -28,8 +27,8 @@ from rotorpump.transcription.recovery import node_marks, recover_trajectory
 
 Array = NDArray[np.float64]
 
-PER_ARC = 8
-PER_HALF_TURN = 20
+PER_ARC = 6
+PER_HALF_TURN = 16
 """Intervals of the first mesh, in each arc of a motion in time and of a steady rotation."""
 
 RELAXATION = 1e-2
@@ -39,8 +38,9 @@ SEAT = 2e-3
 CREEP = 2e-2
 """Gap (in strokes) and speed (in typical speeds) below which the mass counts as resting."""
 
+RELAXED_ITERATIONS = 150
 MOST_ITERATIONS = 300
-"""Iterations of one solve; a start that takes more is rarely worth it."""
+"""Iterations of one solve, relaxed or not; a start that takes more is rarely worth it."""
 
 PATTERNS = 2
 """Corrections of the pattern of resting intervals at most."""
@@ -76,14 +76,6 @@ class Candidate:
         return self.outcome.status.success
 
 
-Route = Callable[[Rig, Task, Seed, Monitor | None], Candidate]
-
-
-def routes_for(rig: Rig) -> tuple[Route, ...]:
-    """Routes that make sense for this rig."""
-    return (take_direct, take_relaxed) if can_rest(rig) else (take_direct,)
-
-
 def take_direct(rig: Rig, task: Task, seed: Seed, monitor: Monitor | None) -> Candidate:
     """Solve with the resting intervals of the starting motion."""
     return solve_posed(task, assign(rig, task, seed), seed, monitor)
@@ -101,22 +93,26 @@ def solve_posed(task: Task, problem: Problem, seed: Seed, monitor: Monitor | Non
     return _settle(task, program, start, Settings(iterations=MOST_ITERATIONS), monitor, 0)
 
 
-def take_relaxed(rig: Rig, task: Task, seed: Seed, monitor: Monitor | None) -> Candidate:
-    """Let relaxed end stops find the resting intervals, then solve with these."""
+def relax(rig: Rig, task: Task, seed: Seed, monitor: Monitor | None) -> Candidate:
+    """Solve with relaxed end stops, on equal intervals: quick, and a little too rosy."""
     problem = assign(rig, task, seed, relaxed=True)
-    mesh = _first_mesh(problem, flexible=False)
-    program = Program(problem, mesh, RELAXATION)
+    program = Program(problem, _first_mesh(problem, flexible=False), RELAXATION)
     start = program.start_from(seed.guess, seed.ends)
-    outcome = run_ipopt(program, start, Settings(tolerance=1e-5, iterations=200), monitor=monitor)
-    if outcome.status is Status.INTERRUPTED:
-        return candidate_of(task, program, outcome, outcome.iterations)
-    rests = find_rests(program, outcome.variables)
-    settled = mesh.settled(node_marks(program, outcome.variables))
-    strict = replace(problem, form=replace(problem.form, relaxed=False))
-    program = Program(strict, settled.with_rests(rests, flexible=True))
-    start = program.variable_bounds.clip(outcome.variables)
+    settings = Settings(tolerance=1e-4, iterations=RELAXED_ITERATIONS)
+    outcome = run_ipopt(program, start, settings, monitor=monitor)
+    return candidate_of(task, program, outcome, outcome.iterations)
+
+
+def settle_relaxed(task: Task, relaxed: Candidate, monitor: Monitor | None) -> Candidate:
+    """Take the resting intervals from a relaxed solution, and solve with these."""
+    program, variables = relaxed.program, relaxed.outcome.variables
+    problem = program.problem
+    rests = find_rests(program, variables)
+    mesh = program.mesh.settled(node_marks(program, variables)).with_rests(rests, flexible=True)
+    strict = Program(replace(problem, form=replace(problem.form, relaxed=False)), mesh)
+    start = strict.variable_bounds.clip(variables)
     settings = Settings(barrier=1e-2, iterations=MOST_ITERATIONS)
-    return _settle(task, program, start, settings, monitor, outcome.iterations)
+    return _settle(task, strict, start, settings, monitor, relaxed.iterations)
 
 
 def _first_mesh(problem: Problem, *, flexible: bool) -> Mesh:

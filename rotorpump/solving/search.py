@@ -1,26 +1,41 @@
 # SPDX-License-Identifier: BSD-3-Clause
-"""Search for the best local optimum: seeds and routes are tried until the best is confirmed."""
+"""Search for the best local optimum.
+
+Motions with different sequences of events lead to different optima. So every sequence that the
+practical law shows is scouted by a quick relaxed solve; the promising ones are settled first, and
+solves that take the law's motion as it is come in between, until the best optimum is confirmed.
+"""
 
 from __future__ import annotations
 
 import math
 from dataclasses import dataclass, field
+from functools import partial
+from itertools import zip_longest
 
 from rotorpump.rig.rig import Rig
 from rotorpump.solution.status import Status
-from rotorpump.solving.assignment import gain
+from rotorpump.solving.assignment import can_rest, gain
+from rotorpump.solving.ipopt import Monitor
 from rotorpump.solving.news import Reporter
-from rotorpump.solving.routes import Candidate, routes_for
+from rotorpump.solving.routes import Candidate, relax, settle_relaxed, take_direct
 from rotorpump.solving.seeds import Seed
-from rotorpump.tasks import Task, measure
+from rotorpump.tasks import Pump, Rotate, SpinUp, Task, measure
 
-AGREEMENT = 5e-3
-"""Relative distance within which two local optima count as the same."""
+AGREEMENT = 1e-2
+"""Relative distance within which two local optima on a first mesh count as the same."""
 
-LEAST_RUNS = 3
+PROMISE = 2e-2
+"""Relative advantage of a scout over the best optimum above which it has to be settled."""
+
+SCOUTED = 9
+ROTATIONS = 2
+"""Sequences of events that are scouted at most, and steady rotations."""
+
+LEAST_RUNS = {Pump: 5, SpinUp: 5, Rotate: 3}
 MOST_RUNS = 14
 MOST_ITERATIONS = 3000
-"""Runs (a seed on a route) that are made at least and at most, and iterations of all of them."""
+"""Settled runs at least and at most, and iterations of all of them."""
 
 
 @dataclass(eq=False)
@@ -35,6 +50,8 @@ class Search:
         Solved runs, the best first.
     unsolved : list of Candidate
         Runs that did not solve, in the order in which they were made.
+    scouts : list of Candidate
+        Relaxed solutions that are not settled yet.
     interrupted : bool
         Whether the user stopped the search.
     """
@@ -43,6 +60,7 @@ class Search:
     task: Task
     candidates: list[Candidate] = field(default_factory=list)
     unsolved: list[Candidate] = field(default_factory=list)
+    scouts: list[Candidate] = field(default_factory=list)
     interrupted: bool = False
 
     @property
@@ -53,7 +71,8 @@ class Search:
     @property
     def iterations(self) -> int:
         """Iterations of all runs."""
-        return sum(c.iterations for c in (*self.candidates, *self.unsolved))
+        everything = (*self.candidates, *self.unsolved, *self.scouts)
+        return sum(candidate.iterations for candidate in everything)
 
     @property
     def spread(self) -> float:
@@ -85,8 +104,19 @@ class Search:
     @property
     def finished(self) -> bool:
         """Whether the best optimum is confirmed, or the effort spent."""
-        spent = self.runs >= MOST_RUNS or self.iterations >= MOST_ITERATIONS
-        return self.interrupted or spent or (self.runs >= LEAST_RUNS and self.agreeing >= 2)
+        if self.interrupted or self.runs >= MOST_RUNS or self.iterations >= MOST_ITERATIONS:
+            return True
+        enough = self.runs >= LEAST_RUNS[type(self.task)] and self.agreeing >= 2
+        return enough and not self._promising
+
+    @property
+    def _promising(self) -> bool:
+        """Whether a scout that is not settled yet claims more than the best optimum."""
+        best = self.candidates[0].value
+        return any(
+            _usable(scout) and gain(measure(self.task), scout.value, best) > PROMISE
+            for scout in self.scouts
+        )
 
     def best_effort(self) -> Candidate | None:
         """Return the best local optimum, or else where the last run ended."""
@@ -96,19 +126,52 @@ class Search:
 
 
 def search(rig: Rig, task: Task, seeds: list[Seed], reporter: Reporter) -> Search:
-    """Run the seeds on all routes, one after the other, until the best optimum is confirmed.
+    """Run seeds until the best optimum is confirmed or the effort spent.
 
     Ctrl-C ends the search; what was found by then is kept.
     """
     found = Search(rig, task)
     try:
-        for number, seed in enumerate(seeds, 1):
-            for route in routes_for(rig):
-                best = found.candidates[0].value if found.candidates else None
-                stage = f"start {number} of {len(seeds)}"
-                found.add(route(rig, task, seed, reporter.monitor(stage, best)))
-                if found.finished:
-                    return found
+        if can_rest(rig):
+            _scout(found, _distinct(task, seeds), reporter)
+        direct = [partial(take_direct, rig, task, seed) for seed in seeds]
+        settled = [partial(_settle_scout, found, scout) for scout in list(found.scouts)]
+        queue = [run for pair in zip_longest(settled, direct) for run in pair if run is not None]
+        for number, run in enumerate(queue, 1):
+            if found.finished:
+                break
+            best = found.candidates[0].value if found.candidates else None
+            found.add(run(reporter.monitor(f"run {number}", best)))
     except KeyboardInterrupt:
         found.interrupted = True
     return found
+
+
+def _distinct(task: Task, seeds: list[Seed]) -> list[Seed]:
+    """Pick the first seed of each sequence of events; rotations have but one, so some of them."""
+    if isinstance(task, Rotate):
+        return seeds[:ROTATIONS]
+    return list({seed.word: seed for seed in reversed(seeds)}.values())[::-1][:SCOUTED]
+
+
+def _scout(found: Search, seeds: list[Seed], reporter: Reporter) -> None:
+    """Solve each seed with relaxed stops; the most promising first."""
+    for number, seed in enumerate(seeds, 1):
+        monitor = reporter.monitor(f"scout {number} of {len(seeds)}")
+        scout = relax(found.rig, found.task, seed, monitor)
+        if scout.outcome.status is Status.INTERRUPTED:
+            found.add(scout)
+            return
+        found.scouts.append(scout)
+    sign = -1.0 if measure(found.task).more_is_better else 1.0
+    found.scouts.sort(key=lambda scout: (not _usable(scout), sign * scout.value))
+
+
+def _usable(scout: Candidate) -> bool:
+    """Whether a scout's value means something; running out of iterations is no harm to that."""
+    return scout.solved or scout.outcome.status is Status.LIMIT_REACHED
+
+
+def _settle_scout(found: Search, scout: Candidate, monitor: Monitor | None) -> Candidate:
+    found.scouts.remove(scout)
+    return settle_relaxed(found.task, scout, monitor)
