@@ -93,10 +93,12 @@ def solve_posed(task: Task, problem: Problem, seed: Seed, monitor: Monitor | Non
     return _settle(task, program, start, Settings(iterations=MOST_ITERATIONS), monitor, 0)
 
 
-def relax(rig: Rig, task: Task, seed: Seed, monitor: Monitor | None) -> Candidate:
+def relax(
+    rig: Rig, task: Task, seed: Seed, monitor: Monitor | None, *, finer: float = 1.0
+) -> Candidate:
     """Solve with relaxed end stops, on equal intervals: quick, and a little too rosy."""
     problem = assign(rig, task, seed, relaxed=True)
-    program = Program(problem, _first_mesh(problem, flexible=False), RELAXATION)
+    program = Program(problem, _first_mesh(problem, flexible=False, finer=finer), RELAXATION)
     start = program.start_from(seed.guess, seed.ends)
     settings = Settings(tolerance=1e-4, iterations=RELAXED_ITERATIONS)
     outcome = run_ipopt(program, start, settings, monitor=monitor)
@@ -115,8 +117,8 @@ def settle_relaxed(task: Task, relaxed: Candidate, monitor: Monitor | None) -> C
     return _settle(task, strict, start, settings, monitor, relaxed.iterations)
 
 
-def _first_mesh(problem: Problem, *, flexible: bool) -> Mesh:
-    intervals = PER_HALF_TURN if problem.start is None else PER_ARC
+def _first_mesh(problem: Problem, *, flexible: bool, finer: float = 1.0) -> Mesh:
+    intervals = round(finer * (PER_HALF_TURN if problem.start is None else PER_ARC))
     return Mesh.uniform(len(problem.chain), intervals, flexible=flexible)
 
 

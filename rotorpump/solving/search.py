@@ -21,6 +21,9 @@ from rotorpump.solving.news import Reporter
 from rotorpump.solving.routes import Candidate, relax, settle_relaxed, take_direct
 from rotorpump.solving.seeds import Seed
 from rotorpump.tasks import Pump, Rotate, SpinUp, Task, measure
+from rotorpump.transcription.arcs import signature
+from rotorpump.transcription.guess import Guess
+from rotorpump.transcription.recovery import node_marks
 
 AGREEMENT = 1e-2
 """Relative distance within which two local optima on a first mesh count as the same."""
@@ -31,6 +34,9 @@ PROMISE = 2e-2
 SCOUTED = 9
 ROTATIONS = 2
 """Sequences of events that are scouted at most, and steady rotations."""
+
+WIDE, AGAIN, FINER = 0.1, 2, 1.6
+"""Spread above which so many optima are looked at again on a so much finer mesh."""
 
 LEAST_RUNS = {Pump: 5, SpinUp: 5, Rotate: 3}
 MOST_RUNS = 14
@@ -142,6 +148,8 @@ def search(rig: Rig, task: Task, seeds: list[Seed], reporter: Reporter) -> Searc
                 break
             best = found.candidates[0].value if found.candidates else None
             found.add(run(reporter.monitor(f"run {number}", best)))
+        if can_rest(rig) and found.spread > WIDE and not found.interrupted:
+            _look_again(found, reporter)
     except KeyboardInterrupt:
         found.interrupted = True
     return found
@@ -165,6 +173,26 @@ def _scout(found: Search, seeds: list[Seed], reporter: Reporter) -> None:
         found.scouts.append(scout)
     sign = -1.0 if measure(found.task).more_is_better else 1.0
     found.scouts.sort(key=lambda scout: (not _usable(scout), sign * scout.value))
+
+
+def _look_again(found: Search, reporter: Reporter) -> None:
+    """Scout once more on a finer mesh, from the best optima of different sequences of events."""
+    chains: dict[str, Candidate] = {}
+    for candidate in found.candidates:
+        chains.setdefault(signature(candidate.program.problem.chain), candidate)
+    for number, candidate in enumerate(list(chains.values())[:AGAIN], 1):
+        monitor = reporter.monitor(f"second look {number}", found.candidates[0].value)
+        marks = node_marks(candidate.program, candidate.outcome.variables)
+        ends = [float(marks[k]) for k in candidate.program.mesh.edges[1:]]
+        chain = candidate.program.problem.chain
+        seed = Seed(Guess.from_trajectory(candidate.trajectory), chain, ends)
+        scout = relax(found.rig, found.task, seed, monitor, finer=FINER)
+        found.scouts.append(scout)
+        if scout.outcome.status is not Status.INTERRUPTED:
+            scout = _settle_scout(found, scout, monitor)
+        found.add(scout)
+        if found.interrupted:
+            return
 
 
 def _usable(scout: Candidate) -> bool:
