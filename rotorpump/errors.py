@@ -31,11 +31,19 @@ class InputError(RotorpumpError, ValueError):
         self.received = received
         self.where = where
         place = f"{where}: " if where else ""
-        super().__init__(f"{place}{field}: {rule}; received {received!r}")
+        super().__init__(f"{place}{field}: {rule}; received {_shown(received)}")
 
     def at(self, where: str) -> InputError:
         """Return the same error, placed in a file and table."""
         return InputError(self.field, self.rule, self.received, where)
+
+
+def _shown(value: object) -> str:
+    """Return the value as it is written, or its kind if Python refuses to write it."""
+    try:
+        return repr(value)
+    except ValueError:
+        return f"a {type(value).__name__} too long to show"
 
 
 class SolveError(RotorpumpError):

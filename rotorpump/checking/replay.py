@@ -121,7 +121,7 @@ def _seated(rig: Rig, trajectory: Trajectory, nodes: NDArray[np.intp]) -> NDArra
     """Whether the mass rests on a stop at these nodes."""
     gaps = np.abs(trajectory.radial[nodes, None] - np.array(rig.radial.stroke)).min(axis=1)
     still = np.abs(trajectory.radial_speed[nodes]) <= SEAT * slide_pace(rig, trajectory)
-    return (gaps <= SEAT * rig.radial.length) & still
+    return np.asarray((gaps <= SEAT * rig.radial.length) & still)
 
 
 def _stopping_share(rig: Rig, speed: Any) -> Any:

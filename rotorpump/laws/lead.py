@@ -67,7 +67,7 @@ class LeadRun:
     @property
     def time(self) -> Array:
         """Times of the samples [s], shape (n,)."""
-        return np.arange(self.states.shape[1]) * self.step
+        return np.asarray(np.arange(self.states.shape[1]) * self.step, dtype=float)
 
     def cut(self, steps: int) -> LeadRun:
         """Return the first steps only."""
@@ -197,7 +197,7 @@ def controller_step(rig: Rig) -> float:
     force, speed = rig.radial.force / rig.mass, rig.radial.speed
     length = rig.radial.length
     move = max(2.0 * (length / force) ** 0.5, length / speed)
-    return min(max(move / 60.0, swing / 1500.0), swing / 400.0)
+    return float(min(max(move / 60.0, swing / 1500.0), swing / 400.0))
 
 
 def run_leads(

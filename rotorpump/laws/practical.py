@@ -5,6 +5,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable
+from functools import partial
 
 import numpy as np
 from numpy.typing import NDArray
@@ -76,7 +77,7 @@ def _attempts(rig: Rig, task: Task) -> list[Callable[[Leads], Trial]]:
         weight = 4.0 * constants.mass * constants.gravity * constants.outer
         least = math.sqrt(weight / rig.inertia(constants.outer))
         speeds = [factor * least for factor in ROTATION_SPEEDS]
-        return [lambda leads, speed=speed: try_rotation(rig, leads, speed) for speed in speeds]
+        return [partial(try_rotation, rig, speed) for speed in speeds]
     check_beginning(rig, task)
     if isinstance(task, Pump):
         return [lambda leads: try_pump(rig, task, leads)]

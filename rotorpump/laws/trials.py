@@ -141,7 +141,7 @@ def try_spin_up(rig: Rig, task: SpinUp, leads: Leads) -> Trial:
     return Trial(run, time, -time, slams(rig, run))
 
 
-def try_rotation(rig: Rig, leads: Leads, speed: float) -> Trial:
+def try_rotation(rig: Rig, speed: float, leads: Leads) -> Trial:
     """Run from a speed at the lowest point, mass outside, until the turns repeat."""
     outer = rig.radial.stroke[1]
     step = controller_step(rig)
@@ -149,7 +149,8 @@ def try_rotation(rig: Rig, leads: Leads, speed: float) -> Trial:
     def turn_times(states: Array) -> Array:
         turns = np.arange(1, math.floor(states[0].max() / (2.0 * math.pi)) + 1)
         reached = np.maximum.accumulate(states[0])
-        return np.interp(2.0 * math.pi * turns, reached, np.arange(reached.size) * step)
+        samples = np.arange(reached.size) * step
+        return np.asarray(np.interp(2.0 * math.pi * turns, reached, samples))
 
     def done(states: Array) -> bool:
         durations = np.diff(turn_times(states))

@@ -86,6 +86,8 @@ def verdict_lines(solution: Solution) -> list[str]:
     """Say whether the checks passed, and list those that did not."""
     if solution.verified:
         return [f"verified: {len(solution.checks)} independent checks passed"]
+    if solution.checks and not solution.success:
+        return ["NOT VERIFIED: this is no solution"]
     if not solution.checks:
         return ["NOT VERIFIED: no independent check has run"]
     failed = [check for check in solution.checks if not check.passed]

@@ -202,7 +202,7 @@ def _options(program: Program, settings: Settings, *, warm: bool) -> dict[str, A
     return options
 
 
-class _Watcher(casadi.Callback):  # type: ignore[misc]
+class _Watcher(casadi.Callback):
     """Iteration callback: counts, reports, and stops the run when the user asks for it."""
 
     def __init__(self, program: dict[str, Any], monitor: Monitor | None) -> None:

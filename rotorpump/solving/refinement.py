@@ -76,7 +76,7 @@ def interval_errors(program: Program, z: Array) -> Array:
     if forces:
         missed = _missed_force(np.hstack(forces)) * duration[:, 0] / rig.mass / scales.speed
         error = np.maximum(error, np.where(program.mesh.rests == FREE, missed, 0.0))
-    return error
+    return np.asarray(error)
 
 
 def _missed_force(force: Array) -> Array:

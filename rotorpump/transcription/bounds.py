@@ -4,9 +4,10 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
-from numpy.typing import NDArray
+from numpy.typing import ArrayLike, NDArray
 
 from rotorpump.transcription.layout import Layout
 from rotorpump.transcription.mesh import FREE, OUTER, Mesh
@@ -31,10 +32,10 @@ class Bounds:
         """No bounds at all."""
         return cls(np.full(shape, -np.inf), np.full(shape, np.inf))
 
-    def limit(self, places: object, lower: object, upper: object) -> None:
+    def limit(self, places: Any, lower: ArrayLike, upper: ArrayLike) -> None:
         """Set the bounds at ``places``."""
-        self.lower[places] = lower  # type: ignore[index]
-        self.upper[places] = upper  # type: ignore[index]
+        self.lower[places] = lower
+        self.upper[places] = upper
 
     def clip(self, values: Array) -> Array:
         """Move values into the bounds."""

@@ -47,7 +47,7 @@ class Guess:
 
     def at(self, name: str, time: Array) -> Array:
         """Interpolate the quantity called ``name``."""
-        return np.interp(time, self.time, getattr(self, name))
+        return np.asarray(np.interp(time, self.time, getattr(self, name)))
 
     def cut(self, start: float, end: float) -> Guess:
         """Return the motion between two times, its time counted from the first."""

@@ -57,19 +57,22 @@ def recover_trajectory(program: Program, z: Array) -> Trajectory:
     speed = wheel_speed(constants, momentum, radial)
     acceleration = path.acceleration(elapsed)
     contact = contact_force(np, constants, angle, speed, radial, acceleration)
-    columns = [
-        np.broadcast_to(column, angle.shape)
-        for column in (edges[:-1, None] + elapsed, angle, momentum, radial, slide_speed, contact)
-    ]
-    columns.insert(5, _drive_share(program, columns[-1]))
-    *columns, contact = (_joined(column, form.rung) for column in columns)
+
+    def joined(column: Array) -> Array:
+        return _joined(np.broadcast_to(column, angle.shape), form.rung)
+
     starts = _interval_starts(program)
     return trajectory_of(
         rig,
-        *columns,
+        joined(edges[:-1, None] + elapsed),
+        joined(angle),
+        joined(momentum),
+        joined(radial),
+        joined(slide_speed),
+        joined(_drive_share(program, contact)),
         breaks=np.unique(np.append(starts, starts[1:] - 1) if form.rung == INSTANT else starts),
         arcs=starts[program.mesh.edges],
-        contact=contact,
+        contact=joined(contact),
     )
 
 

@@ -145,7 +145,8 @@ def test_strong_drive_grows_like_the_ideal_law():
     flips = np.flatnonzero(momentum[:-1] * momentum[1:] < 0.0)
     amplitudes = np.abs(states[0][flips])
     assert expected.size >= 3
-    assert amplitudes[: expected.size] == pytest.approx(expected, rel=1e-3)
+    # A sampled controller takes some steps for a move, which costs it a little.
+    assert amplitudes[: expected.size] == pytest.approx(expected, rel=3e-3)
 
 
 def test_weak_drive_lets_the_mass_slam():
@@ -234,7 +235,7 @@ def test_unreachable_energy_is_said():
 
 
 def test_rotation_turns_at_the_speed_it_reports():
-    trial = try_rotation(RIG, HALF, 14.0)
+    trial = try_rotation(RIG, 14.0, HALF)
     assert trial.reached
     states, time = trial.run.states, trial.run.time
     bottoms = 2.0 * math.pi * np.ceil(states[0, 0] / (2.0 * math.pi) + np.array([0.0, 1.0]))
@@ -248,7 +249,7 @@ def test_rotation_turns_at_the_speed_it_reports():
 
 def test_rotation_that_dies_down_is_lost():
     slow = rig_on(2, friction=AxleFriction(viscous=2.0))
-    trial = try_rotation(slow, HALF, 8.0)
+    trial = try_rotation(slow, 8.0, HALF)
     assert not trial.reached
     run = run_practical(slow, Rotate())
     assert not run.reached

@@ -1,0 +1,36 @@
+# SPDX-License-Identifier: BSD-3-Clause
+"""A motion to start from: taken in whatever form it comes, and never worse for it."""
+
+from __future__ import annotations
+
+import pytest
+from bench_rigs import BENCH, ROTATE, TO_SPEED, advantage, with_friction
+
+import rotorpump as rp
+
+NOISE = 5e-4
+
+
+@pytest.mark.parametrize("form", ["solution", "trajectory", "practical law"])
+def test_a_guess_is_taken_in_any_form(form, solve):
+    known = solve(BENCH, TO_SPEED)
+    guesses = {"solution": known, "trajectory": known.trajectory}
+    best = rp.optimize(
+        BENCH, TO_SPEED, guess=guesses.get(form) or rp.run_practical(BENCH, TO_SPEED)
+    )
+    assert best.verified
+    assert advantage(TO_SPEED, best.objective.value, known.objective.value) > -NOISE
+
+
+def test_the_jumps_of_the_ideal_law_serve_as_a_guess(rotated):
+    best = rp.optimize(BENCH, ROTATE, guess=rp.run_ideal(BENCH, ROTATE))
+    assert best.verified
+    assert advantage(ROTATE, best.objective.value, rotated.objective.value) > -NOISE
+
+
+def test_the_optimum_of_a_neighbouring_rig_serves_as_a_guess(solve):
+    known = solve(BENCH, TO_SPEED)
+    best = rp.optimize(with_friction(BENCH, viscous=0.038), TO_SPEED, guess=known)
+    assert best.verified
+    # less friction: sooner at the goal
+    assert advantage(TO_SPEED, best.objective.value, known.objective.value) > -NOISE
