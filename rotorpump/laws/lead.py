@@ -200,6 +200,13 @@ def controller_step(rig: Rig) -> float:
     return float(min(max(move / 60.0, swing / 1500.0), swing / 400.0))
 
 
+def usable_drive(rig: Rig, step: float) -> tuple[float, float]:
+    """Speed [m/s] and force [N] that a controller with this step can make use of."""
+    slide, move = rig.radial, MOVE_STEPS * step
+    speed = min(slide.speed, 2.0 * slide.length / move)
+    return speed, min(slide.force, 4.0 * rig.mass * slide.length / move**2)
+
+
 def run_leads(
     rig: Rig,
     start: tuple[float, float, float, float],
@@ -226,11 +233,7 @@ def run_leads(
     done : callable, optional
         Called with all states so far, shape (4, n), now and then; true ends the run early.
     """
-    slide = rig.radial
-    drive = (
-        min(slide.speed, 2.0 * slide.length / (MOVE_STEPS * step)),
-        min(slide.force, 4.0 * rig.mass * slide.length / (MOVE_STEPS * step) ** 2),
-    )
+    drive = usable_drive(rig, step)
     constant = [
         np.repeat(np.array(values, dtype=float)[:, None], CHUNK, axis=1)
         for values in (Constants.of(rig), drive, (leads.bottom, leads.turn), (step,))

@@ -10,7 +10,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from rotorpump.laws.lead import LeadRun, Leads, controller_step, run_leads
+from rotorpump.laws.lead import LeadRun, Leads, controller_step, run_leads, usable_drive
 from rotorpump.physics.constants import Constants
 from rotorpump.physics.energy import energy_above_rest
 from rotorpump.physics.equations import wheel_speed
@@ -29,7 +29,7 @@ MOST_TURNS = 80
 """Turns after which a rotation that has not become steady is given up."""
 
 STEADY = 1e-3
-"""Relative change of the mean time per turn below which a rotation counts as steady."""
+"""Relative change of the mean time per turn, to come, below which a rotation is steady."""
 
 SPELL = 5
 """Turns over which that mean is taken: the sampled controller makes single turns jitter."""
@@ -92,7 +92,8 @@ def slams(rig: Rig, run: LeadRun) -> bool:
     seated = ((position >= outer) | (position <= inner)) & (speed == 0.0)
     arriving = np.flatnonzero(seated[1:] & ~seated[:-1])
     fastest = float(np.abs(speed[arriving]).max(initial=0.0))
-    return fastest > SLAM * rig.radial.force / rig.mass * run.step
+    _, force = usable_drive(rig, run.step)
+    return fastest > SLAM * force / rig.mass * run.step
 
 
 def try_pump(rig: Rig, task: Pump, leads: Leads) -> Trial:
@@ -169,8 +170,13 @@ def try_rotation(rig: Rig, speed: float, leads: Leads) -> Trial:
 
 
 def _steady(durations: Array) -> bool:
-    """Whether the last turns took as long as those before them."""
-    if durations.size < 2 * SPELL:
+    """Whether the mean time per turn has come close to where it tends.
+
+    From one spell to the next its changes shrink geometrically, which tells what is still to come.
+    """
+    if durations.size < 3 * SPELL:
         return False
-    late, early = durations[-SPELL:], durations[-2 * SPELL : -SPELL]
-    return bool(abs(late.mean() / early.mean() - 1.0) < STEADY)
+    spells = durations[-3 * SPELL :].reshape(3, SPELL).mean(axis=1)
+    before, last = np.abs(np.diff(spells))
+    ratio = min(last / before, 0.99) if before > 0.0 else 0.0
+    return bool(last * max(ratio / (1.0 - ratio), 1.0) < STEADY * spells[-1])

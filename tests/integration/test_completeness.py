@@ -3,8 +3,10 @@
 
 from __future__ import annotations
 
+import math
+
 import pytest
-from bench_rigs import BENCH, TO_SPEED, with_friction, with_slide
+from bench_rigs import BENCH, PUMP, TO_SPEED, UNLIMITED, with_friction, with_slide
 
 import rotorpump as rp
 
@@ -32,17 +34,13 @@ def test_a_little_more_friction_costs_a_little_time():
     strict=True, raises=rp.SolveError, reason="the practical law is taken for steady too soon"
 )
 def test_an_optimum_is_not_refused_for_a_law_that_still_slows_down():
-    best = rp.optimize(LOOSE, rp.Rotate())
-    assert best.verified
-    law = rp.run_practical(LOOSE, rp.Rotate())
-    assert law.objective.value < best.objective.value * (1.0 + 1e-3)
+    assert rp.optimize(LOOSE, rp.Rotate()).verified
 
 
 @pytest.mark.xfail(
     strict=True, reason="without a force limit, the energy of a moving mass is left out"
 )
 def test_a_pump_is_never_worse_without_a_force_limit(solve):
-    task = rp.Pump(duration=2.0, start_angle=0.6)
-    limited = solve(with_slide(BENCH, speed=float("inf")), task)
-    unlimited = solve(with_slide(BENCH, speed=float("inf"), force=float("inf")), task)
+    limited = solve(with_slide(BENCH, speed=math.inf), PUMP)
+    unlimited = solve(with_slide(BENCH, **UNLIMITED), PUMP)
     assert unlimited.objective.value > limited.objective.value * (1.0 - 1e-3)

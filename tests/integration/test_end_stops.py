@@ -13,7 +13,7 @@ SAME = 1e-3
 """Relative distance of two local optima on different meshes that count as the same."""
 
 OVERLOADED = with_slide(BENCH, force=20.0)
-FAST = rp.Pump(duration=1.5, start_angle=0.3, start_speed=8.0)
+FAST = rp.Pump(duration=0.8, start_angle=0.3, start_speed=8.0)
 """The mass starts outside, where its centrifugal load alone is about the drive's force."""
 
 

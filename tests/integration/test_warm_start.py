@@ -11,13 +11,11 @@ import rotorpump as rp
 NOISE = 5e-4
 
 
-@pytest.mark.parametrize("form", ["solution", "trajectory", "practical law"])
+@pytest.mark.parametrize("form", ["trajectory", "practical law"])
 def test_a_guess_is_taken_in_any_form(form, solve):
     known = solve(BENCH, TO_SPEED)
-    guesses = {"solution": known, "trajectory": known.trajectory}
-    best = rp.optimize(
-        BENCH, TO_SPEED, guess=guesses.get(form) or rp.run_practical(BENCH, TO_SPEED)
-    )
+    guess = known.trajectory if form == "trajectory" else rp.run_practical(BENCH, TO_SPEED)
+    best = rp.optimize(BENCH, TO_SPEED, guess=guess)
     assert best.verified
     assert advantage(TO_SPEED, best.objective.value, known.objective.value) > -NOISE
 
