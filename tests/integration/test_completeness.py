@@ -22,17 +22,14 @@ LOOSE = rp.Rig(
 @pytest.mark.xfail(
     strict=True, reason="no run of the practical law reaches the goal in as few swings"
 )
-def test_a_little_more_friction_costs_a_little_time():
-    less, more = (with_friction(BENCH, viscous=value) for value in (0.047, 0.050))
-    before = rp.optimize(less, TO_SPEED)
-    after = rp.optimize(more, TO_SPEED)
-    # the optimum of the one, as a guess for the other, is a verified motion of 1.72 s
-    assert before.objective.value < after.objective.value < 1.1 * before.objective.value
+def test_a_little_more_friction_costs_a_little_time(solve):
+    assert BENCH.friction.viscous == 0.040
+    before = solve(BENCH, TO_SPEED).objective.value
+    after = rp.optimize(with_friction(BENCH, viscous=0.050), TO_SPEED).objective.value
+    # followed in small steps of friction, each optimum the guess for the next, it is 4 % more
+    assert before < after < 1.1 * before
 
 
-@pytest.mark.xfail(
-    strict=True, raises=rp.SolveError, reason="the practical law is taken for steady too soon"
-)
 def test_an_optimum_is_not_refused_for_a_law_that_still_slows_down():
     assert rp.optimize(LOOSE, rp.Rotate()).verified
 

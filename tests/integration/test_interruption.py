@@ -14,7 +14,7 @@ from bench_rigs import BENCH, TO_SPEED, save_rig
 
 import rotorpump as rp
 
-LONG = rp.Pump(duration=30.0, start_angle=0.2)
+LONG = rp.Pump(duration=20.0, start_angle=0.2)
 
 LAUNCHER = """
 import signal, sys

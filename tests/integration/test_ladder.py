@@ -71,8 +71,8 @@ def test_looser_limits_are_never_worse(ladder):
 def test_the_gap_to_no_limits_closes(ladder):
     task, rungs, unlimited, _ = ladder
     gaps = [advantage(task, unlimited.objective.value, best.objective.value) for best in rungs]
-    # twice the speed and force is half the time of a move at most, and so at least half the gap
-    # once moves are short; here the first rungs fall faster
+    # f times the speed and the force make a move at least √f times as quick, and what a finite
+    # move costs falls with its time
     for (factor, gap), (next_factor, next_gap) in pairwise(zip(FACTORS, gaps, strict=True)):
         assert next_gap < gap * math.sqrt(factor / next_factor) + NOISE
     assert gaps[-1] < 3e-3

@@ -3,7 +3,6 @@
 
 from __future__ import annotations
 
-import pytest
 from bench_rigs import BENCH, ROTATE, TO_SPEED, advantage, with_friction
 
 import rotorpump as rp
@@ -11,11 +10,9 @@ import rotorpump as rp
 NOISE = 5e-4
 
 
-@pytest.mark.parametrize("form", ["trajectory", "practical law"])
-def test_a_guess_is_taken_in_any_form(form, solve):
+def test_an_optimum_as_guess_is_kept(solve):
     known = solve(BENCH, TO_SPEED)
-    guess = known.trajectory if form == "trajectory" else rp.run_practical(BENCH, TO_SPEED)
-    best = rp.optimize(BENCH, TO_SPEED, guess=guess)
+    best = rp.optimize(BENCH, TO_SPEED, guess=known.trajectory)
     assert best.verified
     assert advantage(TO_SPEED, best.objective.value, known.objective.value) > -NOISE
 
