@@ -4,8 +4,8 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable
-from functools import partial
+from collections.abc import Callable, Sequence
+from functools import lru_cache, partial
 
 import numpy as np
 from numpy.typing import NDArray
@@ -34,7 +34,10 @@ ROTATION_SPEEDS = (1.2, 2.0, 3.5)
 """Starting speeds of a rotation, in units of the least that carries the wheel over the top."""
 
 
-def rehearse(rig: Rig, task: Task, *, rounds: int = ROUNDS, coarse: bool = False) -> list[Trial]:
+@lru_cache(maxsize=1)
+def rehearse(
+    rig: Rig, task: Task, *, rounds: int = ROUNDS, coarse: bool = False
+) -> tuple[Trial, ...]:
     """Run the law over the grid of leads, then closer around the best; the best trial is first.
 
     Parameters
@@ -45,6 +48,10 @@ def rehearse(rig: Rig, task: Task, *, rounds: int = ROUNDS, coarse: bool = False
         Halvings of the step in the search around the best of the grid.
     coarse : bool, optional
         Whether a third of the leads in each place is enough (always so for a rotation).
+
+    Notes
+    -----
+    The last rehearsal is kept: a comparison needs it for the law itself and for the optimum.
 
     Raises
     ------
@@ -62,7 +69,7 @@ def rehearse(rig: Rig, task: Task, *, rounds: int = ROUNDS, coarse: bool = False
             nearby = Leads(max(best.bottom + da, 0.0), max(best.turn + db, 0.0))
             trials.append(attempts[which](nearby))
         reach /= 2.0
-    return sorted(trials, key=_rank, reverse=True)
+    return tuple(sorted(trials, key=_rank, reverse=True))
 
 
 def _rank(trial: Trial) -> tuple[bool, bool, float]:
@@ -111,7 +118,9 @@ def run_practical(rig: Rig, task: Task, *, objective: str | None = None) -> LawR
     return best_run(rig, task, rehearse(rig, task), objective=wanted.name)
 
 
-def best_run(rig: Rig, task: Task, trials: list[Trial], *, objective: str | None = None) -> LawRun:
+def best_run(
+    rig: Rig, task: Task, trials: Sequence[Trial], *, objective: str | None = None
+) -> LawRun:
     """Return the best of rehearsed trials as a run of the law."""
     wanted = measure(task, objective)
     best = trials[0]

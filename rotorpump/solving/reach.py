@@ -8,6 +8,7 @@ it after all, and serves as a starting motion, or its figure says what is missin
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -58,7 +59,7 @@ class Reach:
     message: str
 
 
-def reach_goal(rig: Rig, task: SpinUp, trials: list[Trial], monitor: Monitor | None) -> Reach:
+def reach_goal(rig: Rig, task: SpinUp, trials: Sequence[Trial], monitor: Monitor | None) -> Reach:
     """Drive the goal's quantity as high as it gets in the time in which the law saturates."""
     measure, goal = goal_measure(rig, task)
     best = max(trials, key=lambda trial: float(measure(trial.run.states).max()))

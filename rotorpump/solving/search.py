@@ -38,7 +38,7 @@ ROTATIONS = 2
 WIDE, AGAIN, FINER = 0.1, 2, 1.6
 """Spread above which so many optima are looked at again on a so much finer mesh."""
 
-LEAST_RUNS = {Pump: 5, SpinUp: 5, Rotate: 3}
+LEAST_RUNS = {Pump: 4, SpinUp: 4, Rotate: 3}
 MOST_RUNS = 14
 MOST_ITERATIONS = 3000
 """Settled runs at least and at most, and iterations of all of them."""

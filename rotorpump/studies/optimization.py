@@ -6,6 +6,7 @@ from __future__ import annotations
 import math
 import time
 import warnings
+from collections.abc import Sequence
 
 from rotorpump.checking.margins import active_shares
 from rotorpump.checking.report import check_motion
@@ -136,14 +137,14 @@ class _Work:
             raise InputError("guess", "must have a trajectory", guess)
         return seed_of(self.task, Guess.from_trajectory(motion))
 
-    def _reach(self, trials: list[Trial]) -> Reach:
+    def _reach(self, trials: Sequence[Trial]) -> Reach:
         monitor = self.reporter.monitor("how far the rig gets")
         if isinstance(self.task, Rotate):
             return reach_rotation(self.rig, self.task, monitor)
         assert isinstance(self.task, SpinUp)
         return reach_goal(self.rig, self.task, trials, monitor)
 
-    def _conclude(self, found: Search, trials: list[Trial]) -> Solution:
+    def _conclude(self, found: Search, trials: Sequence[Trial]) -> Solution:
         """Refine the best local optima one after the other, until one passes its checks."""
         first: Solution | None = None
         for candidate in found.candidates[:FINALISTS]:
@@ -169,7 +170,7 @@ class _Work:
         candidate: Candidate,
         rounds: int,
         extra: int,
-        trials: list[Trial],
+        trials: Sequence[Trial],
     ) -> Solution:
         status, message = candidate.outcome.status, self._praise(found, candidate, trials)
         law = trials[0]
@@ -197,7 +198,7 @@ class _Work:
             verified=status.success and _all_passed(checks),
         )
 
-    def _praise(self, found: Search, candidate: Candidate, trials: list[Trial]) -> str:
+    def _praise(self, found: Search, candidate: Candidate, trials: Sequence[Trial]) -> str:
         words = [f"local optimum, found by {found.agreeing} of {found.runs} runs"]
         law = trials[0]
         if law.reached and not law.slams:
@@ -253,7 +254,7 @@ class _Work:
         )
 
 
-def _failure(found: Search, trials: list[Trial]) -> tuple[Status, str]:
+def _failure(found: Search, trials: Sequence[Trial]) -> tuple[Status, str]:
     """Status and message when no run has solved."""
     if not any(trial.run.states[1].any() for trial in trials):
         return Status.INFEASIBLE, "the friction of the axle holds the wheel: it never moves"

@@ -70,9 +70,9 @@ class Form:
             "wheel": 2 * self.degree,
             "path": max(self.rung, 1),
             "stroke": self.rung,
-            "arrival": 2 * self.degree if self.relaxed else 0,
+            "arrival": 2 if self.relaxed else 0,
             "speed": 1 if force else 0,
-            "force": (self.degree + 1) * (2 if self.relaxed else 1) if force else 0,
+            "force": (2 * self.degree if self.relaxed else self.degree + 1) if force else 0,
         }
 
 
@@ -114,13 +114,15 @@ def interval_kernel(form: Form) -> Kernel:
         if j:
             rate = momentum_rate(casadi, c, points.angle[j], speed, radial, own)
             wheel += points.defects(j, speed, rate)
-        if j and form.relaxed:
+        if j == form.degree and form.relaxed:
             # What the drive alone can brake: it forbids a stop to stop or to throw the mass.
             pace = path.speed(elapsed) ** 2 / 2.0
             strength = force_limit / c.mass + c.gravity
             arrival.append((pace / strength + radial - c.outer) / s.length)
             arrival.append((pace / (strength + radial * speed**2) + c.inner - radial) / s.length)
-        if form.rung == FORCE_LIMITED:
+        # A jump of the force at an interval's start is the next interval's business; a relaxed
+        # solve, which only has to find the pattern, does without that point.
+        if form.rung == FORCE_LIMITED and (j or not form.relaxed):
             acceleration = path.acceleration(elapsed)
             contact = contact_force(casadi, c, points.angle[j], speed, radial, acceleration)
             force += _force_rows(form, contact / force_limit, radial, c, s, relaxation)

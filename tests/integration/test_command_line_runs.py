@@ -140,7 +140,7 @@ def test_a_wrong_rig_ends_before_any_work(tmp_path):
 
 
 def test_two_runs_give_the_same_document(tmp_path):
-    rig = save_rig(tmp_path, BENCH, TO_SPEED)
+    rig = save_rig(tmp_path, BENCH, ROTATE)
     texts = []
     for _ in range(2):
         done = run(tmp_path, "optimize", rig, "--json", "-")

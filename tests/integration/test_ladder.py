@@ -86,8 +86,9 @@ def test_the_ladder_tends_to_the_ideal_law(ladder):
     assert -NOISE < advantage(task, unlimited.objective.value, ideal) < ABOVE_IDEAL
 
 
-@pytest.mark.parametrize("which", list(LADDERS))
-@pytest.mark.parametrize("free", ["speed", "force"])
+@pytest.mark.parametrize(
+    ("which", "free"), [("rotate", "speed"), ("rotate", "force"), ("spin-up", "force")]
+)
 def test_one_limit_alone_lies_between_both_and_none(which, free, solve):
     rig, task = LADDERS[which]
     best = solve(with_slide(rig, **{free: math.inf}), task)

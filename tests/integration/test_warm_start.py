@@ -3,7 +3,7 @@
 
 from __future__ import annotations
 
-from bench_rigs import BENCH, ROTATE, TO_SPEED, advantage, with_friction
+from bench_rigs import BENCH, ROTATE, TO_SPEED, advantage
 
 import rotorpump as rp
 
@@ -21,11 +21,3 @@ def test_the_jumps_of_the_ideal_law_serve_as_a_guess(rotated):
     best = rp.optimize(BENCH, ROTATE, guess=rp.run_ideal(BENCH, ROTATE))
     assert best.verified
     assert advantage(ROTATE, best.objective.value, rotated.objective.value) > -NOISE
-
-
-def test_the_optimum_of_a_neighbouring_rig_serves_as_a_guess(solve):
-    known = solve(BENCH, TO_SPEED)
-    best = rp.optimize(with_friction(BENCH, viscous=0.038), TO_SPEED, guess=known)
-    assert best.verified
-    # less friction: sooner at the goal
-    assert advantage(TO_SPEED, best.objective.value, known.objective.value) > -NOISE
