@@ -25,10 +25,16 @@ Array = NDArray[np.float64]
 SUBSTEPS = 8
 """Steps of the classical Runge-Kutta method that an interval is integrated with."""
 
+GROWTH = 5.0
+"""Factor by which an error of the slide's speed may grow in the rest of an arc, e to the π/2."""
+
+MOST_ITERATIONS = 250
+"""Iterations of a solve on a finer mesh."""
+
 MOST_PIECES = 4
 """Pieces that an interval is divided into at most at once."""
 
-ROUNDS = 4
+ROUNDS = 3
 """Refinements at most."""
 
 
@@ -75,7 +81,7 @@ def interval_errors(program: Program, z: Array) -> Array:
     )
     if forces:
         missed = _missed_force(np.hstack(forces)) * duration[:, 0] / rig.mass / scales.speed
-        error = np.maximum(error, np.where(program.mesh.rests == FREE, missed, 0.0))
+        error = np.maximum(error, np.where(program.mesh.rests == FREE, GROWTH * missed, 0.0))
     return np.asarray(error)
 
 
@@ -107,6 +113,9 @@ def refine(
             return candidate, rounds
         # Both estimates shrink with about the third power of the length.
         wanted = np.ceil(np.cbrt(errors / accuracy)).astype(np.intp)
+        # Switches move a little when the mesh changes: their neighbours are divided as well.
+        wanted[1:] = np.maximum(wanted[1:], np.minimum(wanted[:-1], 2))
+        wanted[:-1] = np.maximum(wanted[:-1], np.minimum(wanted[1:], 2))
         finer = _solve_on_finer(task, candidate, np.clip(wanted, 1, MOST_PIECES), monitor)
         if finer.outcome.status is Status.INTERRUPTED:
             return finer, rounds
@@ -125,5 +134,7 @@ def _solve_on_finer(
     finer = replace(program, mesh=mesh)
     ends = [float(marks[k]) for k in program.mesh.edges[1:]]
     start = finer.start_from(Guess.from_trajectory(candidate.trajectory), ends)
-    outcome = run_ipopt(finer, start, Settings(barrier=1e-3), monitor=monitor)
+    outcome = run_ipopt(
+        finer, start, Settings(barrier=1e-3, iterations=MOST_ITERATIONS), monitor=monitor
+    )
     return candidate_of(task, finer, outcome, candidate.iterations + outcome.iterations)

@@ -9,10 +9,12 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
+from rotorpump.errors import InputError
 from rotorpump.laws.lead import LeadRun
 from rotorpump.laws.practical import rehearse
 from rotorpump.laws.trials import Trial
 from rotorpump.rig.rig import Rig
+from rotorpump.solution.trajectory import Trajectory
 from rotorpump.tasks import Rotate, SpinUp, Task
 from rotorpump.transcription.arcs import Arc, Chain, cut_into_arcs, signature
 from rotorpump.transcription.guess import Guess
@@ -80,6 +82,27 @@ def seed_of(task: Task, guess: Guess) -> Seed:
         final = math.copysign(math.pi, float(guess.angle[-1]))
     chain, ends = cut_into_arcs(guess, final_angle=final)
     return Seed(guess, chain, ends)
+
+
+def seed_from(task: Task, guess: object) -> Seed:
+    """Cut a motion that the user gives into arcs.
+
+    Raises
+    ------
+    InputError
+        If it is no motion, or does not suit the task.
+    """
+    motion = guess if isinstance(guess, Trajectory) else getattr(guess, "trajectory", None)
+    if not isinstance(motion, Trajectory):
+        raise InputError("guess", "must be a Trajectory, or have one", type(guess).__name__)
+    if not motion.duration > 0.0:
+        raise InputError("guess", "must take some time", motion.duration)
+    sampled = Guess.from_trajectory(motion)
+    if isinstance(task, Rotate):
+        turned = np.diff(sampled.angle)
+        if not (np.all(turned > 0.0) and turned.sum() >= 2.0 * math.pi * (1.0 - 1e-9)):
+            raise InputError("guess", "must be a whole turn in the positive direction", "less")
+    return seed_of(task, sampled)
 
 
 def _turn(guess: Guess) -> Seed:

@@ -14,6 +14,7 @@ from rotorpump.errors import InputError, SolveError, SolveWarning
 from rotorpump.laws.practical import rehearse
 from rotorpump.laws.trials import Trial
 from rotorpump.quantities import choice, instance, positive
+from rotorpump.rig.friction import AxleFriction
 from rotorpump.rig.rig import Rig
 from rotorpump.solution.check import Check
 from rotorpump.solution.law_run import LawRun
@@ -29,9 +30,8 @@ from rotorpump.solving.reach import Reach, reach_goal, reach_rotation
 from rotorpump.solving.refinement import refine
 from rotorpump.solving.routes import Candidate
 from rotorpump.solving.search import Search, search
-from rotorpump.solving.seeds import Seed, rehearse_stronger, seed_of, seeds_from
+from rotorpump.solving.seeds import rehearse_stronger, seed_from, seeds_from
 from rotorpump.tasks import Pump, Rotate, SpinUp, Task, measure
-from rotorpump.transcription.guess import Guess
 
 FINALISTS = 3
 """Local optima that are refined at most, one after the other, until one is verified."""
@@ -41,6 +41,8 @@ TIGHTER = 10.0
 
 NOT_WORSE = 2e-3
 """Share by which an optimum may lie below the practical law before it is refused."""
+
+INTERRUPTED = "interrupted by the user"
 
 _UNITS = {"speed": "m/s", "force": "N", "outer stop": "m", "inner stop": "m"}
 
@@ -93,6 +95,10 @@ def optimize(
     if positive("accuracy", accuracy) >= 0.1:
         raise InputError("accuracy", "must be less than 0.1", accuracy)
     choice("on_failure", on_failure, ("raise", "return"))
+    if isinstance(task, Rotate) and rig.friction == AxleFriction(viscous=0.0):
+        raise InputError(
+            "friction", "must not be zero for a Rotate: any speed keeps itself up", rig.friction
+        )
     work = _Work(rig, task, accuracy, Reporter(rig, task, progress))
     solution = work.run(guess)
     if not solution.success and on_failure == "raise":
@@ -115,27 +121,32 @@ class _Work:
         self.reporter.tell("practical law")
         trials = rehearse(self.rig, self.task)
         seeds = seeds_from(self.task, trials)
-        if not seeds and isinstance(self.task, SpinUp):
-            seeds = seeds_from(self.task, rehearse_stronger(self.rig, self.task))
+        if isinstance(self.task, SpinUp):
+            # A stronger drive shows ways with fewer swings, which may be open to this one as well.
+            words = {seed.word for seed in seeds}
+            stronger = seeds_from(self.task, rehearse_stronger(self.rig, self.task))
+            seeds += [seed for seed in stronger if seed.word not in words]
         if guess is not None:
-            seeds.insert(0, self._seed_from(guess))
+            seeds.insert(0, seed_from(self.task, guess))
         found = search(self.rig, self.task, seeds, self.reporter)
+        try:
+            return self._answer(found, trials)
+        except KeyboardInterrupt:
+            found.interrupted = True
+            return self._unsolved(found, Status.INTERRUPTED, INTERRUPTED, None)
+
+    def _answer(self, found: Search, trials: Sequence[Trial]) -> Solution:
+        """Turn what the search found into a solution, or into the reason why there is none."""
         if not found.candidates and not found.interrupted and not isinstance(self.task, Pump):
             reach = self._reach(trials)
             if reach.seed is None:
                 return self._unsolved(found, Status.INFEASIBLE, reach.message, reach.candidate)
             found = search(self.rig, self.task, [reach.seed], self.reporter)
         if found.interrupted:
-            return self._unsolved(found, Status.INTERRUPTED, "interrupted by the user", None)
+            return self._unsolved(found, Status.INTERRUPTED, INTERRUPTED, None)
         if not found.candidates:
             return self._unsolved(found, *_failure(found, trials), None)
         return self._conclude(found, trials)
-
-    def _seed_from(self, guess: Trajectory | LawRun | Solution) -> Seed:
-        motion = guess if isinstance(guess, Trajectory) else guess.trajectory
-        if motion is None:
-            raise InputError("guess", "must have a trajectory", guess)
-        return seed_of(self.task, Guess.from_trajectory(motion))
 
     def _reach(self, trials: Sequence[Trial]) -> Reach:
         monitor = self.reporter.monitor("how far the rig gets")
@@ -148,14 +159,12 @@ class _Work:
         """Refine the best local optima one after the other, until one passes its checks."""
         first: Solution | None = None
         for candidate in found.candidates[:FINALISTS]:
+            refined = candidate
             for accuracy in (self.accuracy, self.accuracy / TIGHTER):
                 monitor = self.reporter.monitor("refinement", candidate.value)
-                refined, rounds = refine(self.task, candidate, accuracy, monitor)
+                refined, rounds = refine(self.task, refined, accuracy, monitor)
                 if refined.outcome.status is Status.INTERRUPTED:
-                    found.interrupted = True
-                    return self._unsolved(
-                        found, Status.INTERRUPTED, "interrupted by the user", None
-                    )
+                    raise KeyboardInterrupt
                 extra = refined.iterations - candidate.iterations
                 solution = self._solution(found, refined, rounds, extra, trials)
                 if solution.verified:
@@ -259,6 +268,11 @@ def _failure(found: Search, trials: Sequence[Trial]) -> tuple[Status, str]:
     if not any(trial.run.states[1].any() for trial in trials):
         return Status.INFEASIBLE, "the friction of the axle holds the wheel: it never moves"
     outcomes = [candidate.outcome for candidate in found.unsolved]
+    if outcomes and all(outcome.status is Status.INFEASIBLE for outcome in outcomes):
+        return (
+            Status.INFEASIBLE,
+            f"no motion within the limits was found from any of {found.runs} starting motions",
+        )
     words = ", ".join(sorted({outcome.word for outcome in outcomes})) or "no starting motion"
     if any(outcome.status is Status.LIMIT_REACHED for outcome in outcomes):
         return Status.LIMIT_REACHED, f"none of {found.runs} runs solved within its limits ({words})"

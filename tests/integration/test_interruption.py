@@ -93,7 +93,6 @@ def test_a_search_that_is_interrupted_gives_what_it_has_found():
     assert solution.objective.value == pytest.approx(solution.trajectory.duration)
 
 
-@pytest.mark.xfail(strict=True, reason="interrupting the refinement loses the optimum found")
 def test_an_optimum_that_is_being_refined_is_kept():
     try:
         solution = rp.optimize(BENCH, TO_SPEED, on_failure="return", progress=in_refinement)
