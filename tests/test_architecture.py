@@ -7,15 +7,10 @@ Each rule is a function from sources to violations, so that it can be shown to f
 from __future__ import annotations
 
 import ast
-import re
-import subprocess
-import sys
 from pathlib import Path
 from typing import NamedTuple
 
 import pytest
-
-import rotorpump
 
 ROOT = Path(__file__).resolve().parents[1]
 FACADE = "rotorpump"
@@ -43,6 +38,12 @@ LAZY = {
     ("rotorpump.studies.comparison", "rotorpump.studies.comparison_table"),
     ("rotorpump.studies.comparison", "rotorpump.plotting.compare"),
     ("rotorpump.commands", "rotorpump.plotting.pictures"),
+    # So do SciPy's subpackages, longer than all of rotorpump.
+    ("rotorpump.laws.hybrid", "scipy.integrate"),
+    ("rotorpump.laws.ideal_rotation", "scipy.optimize"),
+    ("rotorpump.checking.phases", "scipy.integrate"),
+    ("rotorpump.transcription.nodes", "scipy.special"),
+    ("rotorpump.solving.reach", "scipy.integrate"),
 }
 """Imports allowed inside functions: (importer, imported)."""
 
@@ -196,21 +197,6 @@ def unfit_files(sources):
     ]
 
 
-def unmentioned(names, page):
-    """Public names that a page never writes as code."""
-    return [name for name in names if not re.search(rf"`(rp\.)?{name}\b", page)]
-
-
-def loaded_by(statement, package):
-    """Whether a fresh interpreter has loaded ``package`` after ``statement``."""
-    code = f"import sys\n{statement}\nprint({package!r} in sys.modules)"
-    run = subprocess.run(
-        [sys.executable, "-c", code], cwd=ROOT, capture_output=True, text=True, check=False
-    )
-    assert run.returncode == 0, run.stderr
-    return run.stdout.strip() == "True"
-
-
 SOURCES = read_sources("rotorpump")
 
 
@@ -237,17 +223,6 @@ def test_the_package_keeps_the_rule(rule):
 
 def test_tests_and_benchmarks_are_short_and_licensed():
     assert unfit_files(read_sources("tests", "benchmarks")) == []
-
-
-def test_public_names_are_documented():
-    assert len(rotorpump.__all__) > 10
-    page = (ROOT / "docs" / "interface.md").read_text(encoding="utf-8")
-    assert unmentioned(rotorpump.__all__, page) == []
-
-
-@pytest.mark.parametrize("module", ["rotorpump", "rotorpump.cli"])
-def test_matplotlib_is_loaded_for_pictures_only(module):
-    assert not loaded_by(f"import {module}", "matplotlib")
 
 
 LATE = "def f():\n    "
@@ -288,8 +263,3 @@ def test_a_broken_rule_is_found(rule, module, text):
     good = {name: f"{LICENCE}\n{source}" for name, source in GOOD.items()}
     assert rule(good) == []
     assert rule(good | {module: text}) != []
-
-
-def test_a_missing_name_and_a_loaded_package_are_found():
-    assert unmentioned(["Wheel", "Slide"], "`Wheel(inertia)`, `Slides` and Slide") == ["Slide"]
-    assert loaded_by("import json.decoder", "json")

@@ -9,7 +9,6 @@ from typing import ClassVar
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.integrate import solve_ivp
 
 Array = NDArray[np.float64]
 State = list[float]
@@ -61,6 +60,9 @@ def follow(begin: float, end: float, state: State, plan: Callable[[float, State]
     ReplayFailure
         If the integrator fails or the phases never end.
     """
+    # SciPy's subpackages take longer to load than all the rest: only when needed
+    from scipy.integrate import solve_ivp  # noqa: PLC0415
+
     step = (end - begin) / LEAST_STEPS
     for _ in range(MOST_PHASES):
         phase = plan(begin, state)

@@ -15,7 +15,6 @@ from dataclasses import dataclass, replace
 from typing import Any
 
 import numpy as np
-from scipy.integrate import solve_ivp
 
 from rotorpump.errors import RotorpumpError
 from rotorpump.laws.pointwise import Preference
@@ -170,6 +169,9 @@ def _hold(
     events = _events(constants, preference, now, target, speed)
     patience = SETTLING * _decay_time(constants, now.radial)
     length = min(horizon - now.time, patience)
+    # SciPy's subpackages take longer to load than all the rest: only when needed
+    from scipy.integrate import solve_ivp  # noqa: PLC0415
+
     result = solve_ivp(
         rates,
         (0.0, length),

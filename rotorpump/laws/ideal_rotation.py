@@ -8,8 +8,6 @@ from collections.abc import Sequence
 from dataclasses import replace
 from functools import partial
 
-from scipy.optimize import brentq
-
 from rotorpump.laws.hybrid import AHEAD, march
 from rotorpump.laws.pointwise import Preference, pointwise_preference
 from rotorpump.laws.stretch import End, Instant, Stretch, trajectory_along
@@ -115,6 +113,9 @@ def _steady(constants: Constants, preference: Preference, slow: float) -> float:
     fast = 2.0 * slow
     while gain(fast) > 0.0:
         slow, fast = fast, 2.0 * fast
+    # SciPy's subpackages take longer to load than all the rest: only when needed
+    from scipy.optimize import brentq  # noqa: PLC0415
+
     return float(brentq(gain, slow, fast, xtol=1e-14 * fast, rtol=CLOSE))
 
 

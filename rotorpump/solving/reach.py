@@ -12,7 +12,6 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
-from scipy.integrate import cumulative_trapezoid, simpson
 
 from rotorpump.laws.instantaneous import run_ideal
 from rotorpump.laws.trials import Trial, energy_of, goal_measure
@@ -158,6 +157,9 @@ def _plain_turn(rig: Rig, factor: float) -> Seed:
     angle = np.linspace(0.0, 2.0 * math.pi, 400)
     slope = -friction_torque(constants, least, 1.0) / least
     speed = (2.0 * least + slope * (2.0 * math.pi - angle) / inertia) / factor
+    # SciPy's subpackages take longer to load than all the rest: only when needed
+    from scipy.integrate import cumulative_trapezoid  # noqa: PLC0415
+
     time = cumulative_trapezoid(1.0 / speed, angle, initial=0.0)
     guess = Guess(
         time,
@@ -177,5 +179,8 @@ def turn_balance(rig: Rig, trajectory: Trajectory) -> tuple[float, float]:
     constants = Constants.of(rig)
     dense = trajectory.at(np.linspace(trajectory.time[0], trajectory.time[-1], DENSE))
     torque = friction_torque(constants, dense.speed, np.sign(dense.speed))
+    # SciPy's subpackages take longer to load than all the rest: only when needed
+    from scipy.integrate import simpson  # noqa: PLC0415
+
     loss = float(simpson(-torque * dense.speed, x=dense.time))
     return float(trajectory.energy[-1] - trajectory.energy[0]) + loss, loss

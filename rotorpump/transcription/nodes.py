@@ -7,7 +7,6 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.special import roots_jacobi
 
 Array = NDArray[np.float64]
 
@@ -45,6 +44,9 @@ def radau_nodes(degree: int) -> Nodes:
     (Hairer & Wanner, Solving Ordinary Differential Equations II, section IV.5; citation from
     memory).
     """
+    # SciPy's subpackages take longer to load than all the rest: only when needed
+    from scipy.special import roots_jacobi  # noqa: PLC0415
+
     inner = (roots_jacobi(degree - 1, 1.0, 0.0)[0] + 1.0) / 2.0 if degree > 1 else np.empty(0)
     points = np.concatenate(([0.0], inner, [1.0]))
     weights = np.linalg.solve(

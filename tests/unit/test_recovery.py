@@ -153,8 +153,10 @@ def test_variables_come_back(independent, rung, seed):
     trajectory = recover_trajectory(program, z)
     ends = [float(marks[k]) for k in program.mesh.edges[1:]]
     mesh = program.mesh.settled(marks)
-    back = replace(program, mesh=mesh).start_from(Guess.from_trajectory(trajectory), ends)
-    assert back == pytest.approx(z, rel=1e-8, abs=1e-8)
+    again = replace(program, mesh=mesh)
+    back = again.start_from(Guess.from_trajectory(trajectory), ends)
+    # a random motion may leave its bounds; a start is always moved into them
+    assert back == pytest.approx(again.variable_bounds.clip(z), rel=1e-8, abs=1e-8)
 
 
 @pytest.mark.parametrize("rung", [0, 1, 2])
