@@ -58,3 +58,8 @@ def check_motion(
         *end_checks(rig, task, trajectory, claimed),
         *consistency_checks(rig, trajectory),
     )
+
+
+def all_passed(checks: tuple[Check, ...]) -> bool:
+    """Whether a motion is verified: checks have run, and each of them has passed."""
+    return bool(checks) and all(check.passed for check in checks)

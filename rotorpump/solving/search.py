@@ -187,9 +187,8 @@ def _look_again(found: Search, reporter: Reporter) -> None:
         chain = candidate.program.problem.chain
         seed = Seed(Guess.from_trajectory(candidate.trajectory), chain, ends)
         scout = relax(found.rig, found.task, seed, monitor, finer=FINER)
-        found.scouts.append(scout)
         if scout.outcome.status is not Status.INTERRUPTED:
-            scout = _settle_scout(found, scout, monitor)
+            scout = settle_relaxed(found.task, scout, monitor)
         found.add(scout)
         if found.interrupted:
             return

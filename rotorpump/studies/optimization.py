@@ -9,14 +9,13 @@ import warnings
 from collections.abc import Sequence
 
 from rotorpump.checking.margins import active_shares
-from rotorpump.checking.report import check_motion
+from rotorpump.checking.report import all_passed, check_motion
 from rotorpump.errors import InputError, SolveError, SolveWarning
 from rotorpump.laws.practical import rehearse
 from rotorpump.laws.trials import Trial
 from rotorpump.quantities import choice, instance, positive
 from rotorpump.rig.friction import AxleFriction
 from rotorpump.rig.rig import Rig
-from rotorpump.solution.check import Check
 from rotorpump.solution.law_run import LawRun
 from rotorpump.solution.objective import Objective
 from rotorpump.solution.progress import Watcher
@@ -204,7 +203,7 @@ class _Work:
             mesh=_mesh_summary(candidate),
             statistics=self._statistics(found, candidate, rounds, extra),
             checks=checks,
-            verified=status.success and _all_passed(checks),
+            verified=status.success and all_passed(checks),
         )
 
     def _praise(self, found: Search, candidate: Candidate, trials: Sequence[Trial]) -> str:
@@ -277,10 +276,6 @@ def _failure(found: Search, trials: Sequence[Trial]) -> tuple[Status, str]:
     if any(outcome.status is Status.LIMIT_REACHED for outcome in outcomes):
         return Status.LIMIT_REACHED, f"none of {found.runs} runs solved within its limits ({words})"
     return Status.FAILED, f"none of {found.runs} runs solved ({words})"
-
-
-def _all_passed(checks: tuple[Check, ...]) -> bool:
-    return bool(checks) and all(check.passed for check in checks)
 
 
 def _mesh_summary(candidate: Candidate) -> MeshSummary:
