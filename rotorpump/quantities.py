@@ -98,12 +98,12 @@ def limit(field: str, value: object) -> float:
 
 
 def interval(field: str, value: object) -> tuple[float, float]:
-    """Return ``value`` as a pair (lo, hi) of finite numbers with 0 <= lo < hi."""
+    """Return ``value`` as a pair (lo, hi) of finite numbers with lo < hi."""
     if not isinstance(value, Sequence) or isinstance(value, str) or len(value) != 2:
         raise InputError(field, "must be two numbers (lo, hi)", value)
     low, high = (finite(field, entry) for entry in value)
-    if low < 0.0 or low >= high:
-        raise InputError(field, "must satisfy 0 <= lo < hi", value)
+    if low >= high:
+        raise InputError(field, "must satisfy lo < hi", value)
     return low, high
 
 

@@ -7,16 +7,17 @@ import math
 from dataclasses import dataclass
 
 from rotorpump.errors import InputError
-from rotorpump.quantities import choice, finite, positive
+from rotorpump.quantities import finite, non_negative, positive
 from rotorpump.rig.rig import Rig
+from rotorpump.rig.slide import Slide
 
 BALANCED = 1e-9
-"""Distance from hanging or upright [rad] below which a still wheel is balanced."""
+"""Distance from balance [rad], or share of the static moment, below which a wheel is balanced."""
 
 
 @dataclass(frozen=True, kw_only=True)
 class Start:
-    """Where a motion begins; the slide is at rest.
+    """Where a motion begins; the slides are at rest.
 
     Parameters
     ----------
@@ -26,6 +27,8 @@ class Start:
         Wheel speed [rad/s].
     start_radial : float, optional
         Radial position of the mass [m]; the outer end of the stroke by default.
+    start_tangential : float, optional
+        Tangential position of the mass [m]; the middle of the stroke by default.
 
     Raises
     ------
@@ -36,6 +39,7 @@ class Start:
     start_angle: float
     start_speed: float = 0.0
     start_radial: float | None = None
+    start_tangential: float | None = None
 
     def __post_init__(self) -> None:
         angle = finite("start_angle", self.start_angle)
@@ -43,27 +47,50 @@ class Start:
             raise InputError("start_angle", "must lie within -pi and pi", self.start_angle)
         object.__setattr__(self, "start_angle", angle)
         object.__setattr__(self, "start_speed", finite("start_speed", self.start_speed))
-        if self.start_radial is not None:
-            object.__setattr__(self, "start_radial", positive("start_radial", self.start_radial))
+        for name, rule in (("start_radial", non_negative), ("start_tangential", finite)):
+            if getattr(self, name) is not None:
+                object.__setattr__(self, name, rule(name, getattr(self, name)))
 
-    def radial_in(self, rig: Rig) -> float:
-        """Start position of the mass on this rig [m]."""
-        return rig.radial.stroke[1] if self.start_radial is None else self.start_radial
+    def place_in(self, rig: Rig) -> tuple[float, float]:
+        """Start position of the mass on this rig: radial, tangential [m]."""
+        radial, tangential = self.start_radial, self.start_tangential
+        if radial is None:
+            radial = rig.stroke("radial")[1]
+        if tangential is None:
+            slide = rig.tangential
+            tangential = slide.middle if isinstance(slide, Slide) else slide
+        return radial, tangential
 
     def check(self, rig: Rig) -> None:
         """Raise InputError if the motion cannot begin like this on this rig."""
-        low, high = rig.radial.stroke
-        if not low <= self.radial_in(rig) <= high:
-            raise InputError(
-                "start_radial", f"must lie within the stroke {low:g} to {high:g}", self.start_radial
+        place = self.place_in(rig)
+        for axis, value in zip(("radial", "tangential"), place, strict=True):
+            low, high = rig.stroke(axis)
+            if not low <= value <= high:
+                rule = f"must lie within the stroke {low:g} to {high:g}"
+                raise InputError(f"start_{axis}", rule, value)
+        if self.start_speed == 0.0:
+            self._check_torque(rig, place)
+
+    def _check_torque(self, rig: Rig, place: tuple[float, float]) -> None:
+        """Raise InputError where no move of the only slide gives the wheel a torque.
+
+        That is where the slide is vertical and the centre of mass is on its line through the axle.
+        """
+        along, across = rig.static_moment(*place)
+        if rig.driven == ("radial",):
+            aside, slope, angles = across, math.sin(self.start_angle), "0 and from half a turn"
+        elif rig.driven == ("tangential",):
+            aside, slope, angles = along, math.cos(self.start_angle), "a quarter turn either way"
+        else:
+            return
+        centred = abs(aside) <= BALANCED * (rig.mass * math.hypot(*place) + rig.wheel.unbalance)
+        if centred and abs(slope) < BALANCED:
+            rule = (
+                f"must differ from {angles} when start_speed is 0 (a balanced wheel feels no torque"
+                f" from a {rig.driven[0]} move)"
             )
-        if self.start_speed == 0.0 and abs(math.sin(self.start_angle)) < BALANCED:
-            raise InputError(
-                "start_angle",
-                "must differ from 0 and from half a turn when start_speed is 0 (a balanced wheel"
-                " feels no torque from a radial move)",
-                self.start_angle,
-            )
+            raise InputError("start_angle", rule, self.start_angle)
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -74,7 +101,7 @@ class Pump(Start):
     ----------
     duration : float
         Length of the motion [s].
-    start_angle, start_speed, start_radial
+    start_angle, start_speed, start_radial, start_tangential
         See `Start`.
     """
 
@@ -97,13 +124,16 @@ class SpinUp(Start):
         Magnitude of the wheel speed to reach [rad/s].
     full_turn : bool, optional
         Pass over the top for the first time.
-    start_angle, start_speed, start_radial
+    deadline : float, optional
+        Time that the motion may take at most [s].
+    start_angle, start_speed, start_radial, start_tangential
         See `Start`.
     """
 
     energy: float | None = None
     speed: float | None = None
     full_turn: bool = False
+    deadline: float | None = None
 
     def __post_init__(self) -> None:
         super().__post_init__()
@@ -113,6 +143,8 @@ class SpinUp(Start):
         given = [name for name, value in goals.items() if value is not None]
         for name in given:
             object.__setattr__(self, name, positive(name, goals[name]))
+        if self.deadline is not None:
+            object.__setattr__(self, "deadline", positive("deadline", self.deadline))
         given += ["full_turn"] if self.full_turn else []
         if len(given) != 1:
             raise InputError(
@@ -122,39 +154,34 @@ class SpinUp(Start):
 
 @dataclass(frozen=True, kw_only=True)
 class Rotate:
-    """One turn of steady rotation, the same again and again, in the positive direction."""
+    """One turn of steady rotation, the same again and again.
 
-
-Task = Pump | SpinUp | Rotate
-
-
-@dataclass(frozen=True)
-class Measure:
-    """What an objective measures: its name, SI unit, and whether more of it is better."""
-
-    name: str
-    unit: str
-    more_is_better: bool
-
-
-MEASURES: dict[type, tuple[Measure, ...]] = {
-    Pump: (Measure("energy", "J", True),),
-    SpinUp: (Measure("time", "s", False),),
-    Rotate: (Measure("speed", "rad/s", True),),
-}
-"""Objectives of each kind of task, the default first."""
-
-
-def measure(task: Task, name: str | None = None) -> Measure:
-    """Return the objective called ``name`` of this task, or its default one.
+    Parameters
+    ----------
+    mean_speed : float, optional
+        Mean speed that the rotation has to have, 2π by its period [rad/s]; free by default.
+    load_torque : float, optional
+        Torque that a load takes from the wheel [N m].
+    direction : {1, -1}, optional
+        Direction of turning, counter-clockwise by default.
 
     Raises
     ------
     InputError
-        If the task has no such objective.
+        If the speed is not positive, the torque negative, or the direction neither 1 nor -1.
     """
-    offered = MEASURES[type(task)]
-    if name is None:
-        return offered[0]
-    choice("objective", name, [entry.name for entry in offered])
-    return next(entry for entry in offered if entry.name == name)
+
+    mean_speed: float | None = None
+    load_torque: float = 0.0
+    direction: int = 1
+
+    def __post_init__(self) -> None:
+        if self.mean_speed is not None:
+            object.__setattr__(self, "mean_speed", positive("mean_speed", self.mean_speed))
+        object.__setattr__(self, "load_torque", non_negative("load_torque", self.load_torque))
+        if self.direction not in (1, -1) or isinstance(self.direction, bool):
+            raise InputError("direction", "must be 1 or -1", self.direction)
+        object.__setattr__(self, "direction", int(self.direction))
+
+
+Task = Pump | SpinUp | Rotate

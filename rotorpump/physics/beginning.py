@@ -8,6 +8,7 @@ import math
 from rotorpump.errors import InputError
 from rotorpump.physics.constants import Constants
 from rotorpump.physics.energy import energy_above_rest
+from rotorpump.physics.state import Slides
 from rotorpump.rig.rig import Rig
 from rotorpump.tasks import Rotate, SpinUp, Task
 
@@ -20,9 +21,10 @@ def check_beginning(rig: Rig, task: Task) -> None:
     if not isinstance(task, SpinUp):
         return
     if task.energy is not None:
-        radial = task.radial_in(rig)
-        momentum = rig.inertia(radial) * task.start_speed
-        energy = energy_above_rest(math, Constants.of(rig), task.start_angle, momentum, radial, 0.0)
+        radial, tangential = task.place_in(rig)
+        momentum = rig.inertia(radial, tangential) * task.start_speed
+        place = Slides(radial, 0.0, tangential)
+        energy = energy_above_rest(math, Constants.of(rig), task.start_angle, momentum, place)
         _exceed("energy", task.energy, energy, "J")
     if task.speed is not None:
         _exceed("speed", task.speed, abs(task.start_speed), "rad/s")

@@ -6,20 +6,35 @@ from __future__ import annotations
 from typing import Any
 
 from rotorpump.physics.constants import Constants
-from rotorpump.physics.equations import total_inertia
+from rotorpump.physics.equations import sliding_momentum, total_inertia
+from rotorpump.physics.state import Slides
 
 
 def energy_above_rest(
-    xp: Any, constants: Constants, angle: Any, momentum: Any, radial: Any, radial_speed: Any
+    xp: Any, constants: Constants, angle: Any, momentum: Any, slides: Slides
 ) -> Any:
     """Mechanical energy above the lowest the rig can have [J].
 
     Notes
     -----
-    E = H²/(2 I) + ½ m vρ² + m g (ρ_outer - ρ cos φ): zero when the rig hangs still with the mass
+    With L = m (ρ vτ - τ vρ) the kinetic energy is (H² - L²)/(2 I) + ½ m (vρ² + vτ²). The zero of
+    the potential energy is where the rig hangs lowest; a balanced radial rig does so with the mass
     at the outer end.
     """
-    turning = momentum**2 / (2.0 * total_inertia(constants, radial))
-    sliding = 0.5 * constants.mass * radial_speed**2
-    height = constants.outer - radial * xp.cos(angle)
-    return turning + sliding + constants.mass * constants.gravity * height
+    sliding = sliding_momentum(constants, slides)
+    turning = (momentum**2 - sliding**2) / (2.0 * total_inertia(constants, slides))
+    pace = slides.radial_speed**2 + slides.tangential_speed**2
+    height = constants.lowest_moment + height_moment(xp, constants, angle, slides)
+    return turning + 0.5 * constants.mass * pace + constants.gravity * height
+
+
+def height_moment(xp: Any, constants: Constants, angle: Any, slides: Slides) -> Any:
+    """Masses times their heights above the axle [kg m].
+
+    Notes
+    -----
+    -(m ρ + u_ρ) cos φ + (m τ + u_τ) sin φ.
+    """
+    along = constants.mass * slides.radial + constants.unbalance_radial
+    across = constants.mass * slides.tangential + constants.unbalance_tangential
+    return across * xp.sin(angle) - along * xp.cos(angle)

@@ -1,48 +1,82 @@
 # SPDX-License-Identifier: BSD-3-Clause
-"""Load on the axle of the radial rig."""
+"""Load on the axle, and the friction that depends on it."""
 
 from __future__ import annotations
 
 from typing import Any
 
 from rotorpump.physics.constants import Constants
+from rotorpump.physics.state import Slides
+
+FLOOR = 1e-7
+"""Part of the rig's weight that rounds the load off where it would vanish, so that it stays smooth;
+its effect on a friction torque is below rounding unless the rig falls freely."""
 
 
-def axle_load(
-    xp: Any,
-    constants: Constants,
-    wheel_mass: Any,
-    angle: Any,
-    speed: Any,
-    radial: Any,
-    radial_speed: Any,
-    radial_contact: Any,
-    wheel_acceleration: Any,
-) -> Any:
-    """Magnitude of the axle's reaction [N].
+def axle_reaction(
+    xp: Any, constants: Constants, angle: Any, speed: Any, wheel: Any, contact: tuple[Any, Any]
+) -> tuple[Any, Any]:
+    """Force of the axle on the wheel, along the wheel's radial and tangential axis [N].
 
     Parameters
     ----------
     xp : module
-        Maths namespace, numpy or casadi.
+        Maths namespace.
     constants : Constants
         The rig's numbers.
-    wheel_mass : float or symbol
-        Mass that the axle carries without the moving mass, M [kg].
-    angle, speed, wheel_acceleration : array_like or symbol, shape (n,)
+    angle, speed, wheel : array_like or symbol
         Wheel angle φ [rad], its rate ω [rad/s] and second rate φ̈ [rad/s2].
-    radial, radial_speed : array_like or symbol, shape (n,)
-        Position ρ of the mass [m] and its rate vρ [m/s].
-    radial_contact : array_like or symbol, shape (n,)
-        Whole force on the mass along the slide, drive and end stops together, Cρ [N].
+    contact : tuple
+        Whole forces on the mass along both axes, C_ρ and C_τ [N].
 
     Notes
     -----
-    In the wheel frame the reaction is R_ρ = Cρ - M g cos φ and R_τ = Cτ + M g sin φ, where the
-    force across the slide is Cτ = m (ρ φ̈ + g sin φ + 2 vρ ω).
+    R_ρ = C_ρ - M g cos φ - u_τ φ̈ - u_ρ ω² and R_τ = C_τ + M g sin φ + u_ρ φ̈ - u_τ ω², with u the
+    unbalance of the wheel, whose own inertia the axle carries as well.
     """
-    coriolis = 2.0 * radial_speed * speed
-    across = radial * wheel_acceleration + constants.gravity * xp.sin(angle) + coriolis
-    along = radial_contact - wheel_mass * constants.gravity * xp.cos(angle)
-    sideways = constants.mass * across + wheel_mass * constants.gravity * xp.sin(angle)
-    return xp.sqrt(along**2 + sideways**2)
+    c = constants
+    along = contact[0] - c.wheel_mass * c.gravity * xp.cos(angle)
+    across = contact[1] + c.wheel_mass * c.gravity * xp.sin(angle)
+    along = along - c.unbalance_tangential * wheel - c.unbalance_radial * speed**2
+    across = across + c.unbalance_radial * wheel - c.unbalance_tangential * speed**2
+    return along, across
+
+
+def reaction_slope(constants: Constants, slides: Slides) -> tuple[Any, Any]:
+    """Change of the axle's reaction per acceleration of the wheel, slides held [kg m].
+
+    Notes
+    -----
+    ∂R_ρ/∂φ̈ = -(m τ + u_τ), ∂R_τ/∂φ̈ = m ρ + u_ρ.
+    """
+    along = -(constants.mass * slides.tangential + constants.unbalance_tangential)
+    across = constants.mass * slides.radial + constants.unbalance_radial
+    return along, across
+
+
+def self_consistent_load(
+    xp: Any, constants: Constants, fixed: tuple[Any, Any], slope: tuple[Any, Any]
+) -> Any:
+    """Load N on an axle whose reaction itself depends on N by way of friction [N].
+
+    Parameters
+    ----------
+    xp : module
+        Maths namespace.
+    constants : Constants
+        The rig's numbers.
+    fixed : tuple
+        Reaction without load-dependent friction [N].
+    slope : tuple
+        Change of the reaction per newton of load [1]; its magnitude is below 1.
+
+    Notes
+    -----
+    The positive root of N = |fixed + N slope|.
+    """
+    size = fixed[0] ** 2 + fixed[1] ** 2
+    along = fixed[0] * slope[0] + fixed[1] * slope[1]
+    rest = 1.0 - slope[0] ** 2 - slope[1] ** 2
+    weight = (constants.mass + constants.wheel_mass) * constants.gravity
+    root = xp.sqrt(along**2 + rest * (size + (FLOOR * weight) ** 2))
+    return (along + root) / rest

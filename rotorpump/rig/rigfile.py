@@ -1,9 +1,11 @@
 # SPDX-License-Identifier: BSD-3-Clause
 """Rig files: a rig and a task as TOML text, and back.
 
-A table for each part of the rig ([wheel], [radial], [friction]), [mass] for the moving mass, [rig]
-for its other numbers (optional), and [task], whose ``kind`` says what is to be achieved. Keys are
-the field names of the classes, so a new field needs no change here.
+A table for each part of the rig ([wheel], [radial], [tangential], [friction]), [mass] for the
+moving mass, [rig] for its other numbers (optional), and [task], whose ``kind`` says what is to be
+achieved. Keys are the field names of the classes, so a new field needs no change here. The table of
+an axis is that of its slide, or has the one key ``position`` that holds the mass there; a rig file
+without [tangential] holds it at zero.
 """
 
 from __future__ import annotations
@@ -16,8 +18,9 @@ from pathlib import Path
 from typing import Any, get_type_hints
 
 from rotorpump.errors import InputError
-from rotorpump.quantities import choice
-from rotorpump.rig.rig import Rig
+from rotorpump.quantities import choice, finite
+from rotorpump.rig.rig import AXES, Rig
+from rotorpump.rig.slide import Slide
 from rotorpump.tasks import Pump, Rotate, SpinUp, Start, Task
 
 KINDS: dict[str, type[Pump] | type[SpinUp] | type[Rotate]] = {
@@ -32,13 +35,16 @@ PARTS: dict[str, Any] = {
 }
 """Parts of a rig, each with a table of its own."""
 
-NUMBERS = tuple(f for f in fields(Rig) if f.name not in PARTS and f.name != "mass")
+POSITION = "position"
+"""Key that holds the mass along an axis [m]."""
+
+NUMBERS = tuple(f for f in fields(Rig) if f.name not in (*PARTS, *AXES, "mass"))
 """Numbers of a rig that stand in [rig]."""
 
 MASS = tuple(f for f in fields(Rig) if f.name == "mass")
 """The number of a rig that stands in [mass]."""
 
-TABLES = ("rig", "wheel", "mass", *(name for name in PARTS if name != "wheel"), "task")
+TABLES = ("rig", "wheel", "mass", *AXES, *(name for name in PARTS if name != "wheel"), "task")
 
 Table = dict[str, Any]
 
@@ -113,6 +119,9 @@ def parse_rig(text: str, where: str) -> tuple[Rig, Task]:
         name: _build(kind, _table(content, name, where), f"{where} [{name}]")
         for name, kind in PARTS.items()
     }
+    for axis in AXES:
+        if axis in content or axis == "radial":
+            parts[axis] = _axis(_table(content, axis, where), f"{where} [{axis}]")
     mass = _keys(MASS, _table(content, "mass", where), f"{where} [mass]")
     numbers = _keys(NUMBERS, _table(content, "rig", where, required=False), f"{where} [rig]")
     rig = _rig(parts, mass, numbers, where)
@@ -127,6 +136,9 @@ def write_rig(rig: Rig, task: Task) -> str:
     tables["mass"] = {f.name: getattr(rig, f.name) for f in MASS}
     for name in PARTS:
         tables[name] = _values(getattr(rig, name))
+    for axis in AXES:
+        part = getattr(rig, axis)
+        tables[axis] = _values(part) if isinstance(part, Slide) else {POSITION: part}
     tables["task"] = {"kind": kind, **_values(task)}
     blocks = []
     for name, table in tables.items():
@@ -176,11 +188,26 @@ def _build(kind: Any, table: Table, where: str) -> Any:
         raise error.at(where) from error
 
 
+def _axis(table: Table, where: str) -> Any:
+    """Construct a slide, or return the position that holds the mass."""
+    if POSITION not in table:
+        return _build(Slide, table, where)
+    _known(table, (POSITION,), where)
+    try:
+        return finite(POSITION, table[POSITION])
+    except InputError as error:
+        raise error.at(where) from error
+
+
 def _rig(parts: Table, mass: Table, numbers: Table, where: str) -> Rig:
+    """Construct the rig; an error of its own rules gets the place where the user wrote it."""
     try:
         return Rig(**parts, **mass, **numbers)
     except InputError as error:
-        table = "mass" if error.field in mass else "rig"
+        if error.field in AXES:
+            place = f"{where} [{error.field}]"
+            raise InputError(POSITION, error.rule, error.received, place) from error
+        table = "radial" if error.field == "stroke" else "mass" if error.field in mass else "rig"
         raise error.at(f"{where} [{table}]") from error
 
 

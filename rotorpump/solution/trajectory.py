@@ -3,11 +3,13 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, fields
+from dataclasses import dataclass, fields, replace
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
+
+from rotorpump.physics.state import Slides
 
 Array = NDArray[np.float64]
 Indices = NDArray[np.intp]
@@ -16,6 +18,16 @@ HELD = frozenset(
     {"radial_speed", "radial_force", "tangential_speed", "tangential_force", "axle_load"}
 )
 """Quantities that may jump at the start of an interval: its first node does not belong to it."""
+
+MIRRORED = (
+    "angle",
+    "speed",
+    "momentum",
+    "tangential",
+    "tangential_speed",
+    "tangential_force",
+)
+"""Quantities that change their sign when the rig is seen from the other side."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -72,6 +84,16 @@ class Trajectory:
     def duration(self) -> float:
         """Time from the first to the last node [s]."""
         return float(self.time[-1] - self.time[0])
+
+    @property
+    def slides(self) -> Slides:
+        """Place and speed of the mass at the nodes [m, m/s]."""
+        return Slides(self.radial, self.radial_speed, self.tangential, self.tangential_speed)
+
+    def mirrored(self) -> Trajectory:
+        """Return the motion as seen from the other side, that of the mirrored rig."""
+        turned = {name: -getattr(self, name) for name in MIRRORED}
+        return replace(self, **turned)
 
     def columns(self) -> dict[str, Array]:
         """Return every sampled quantity by its name, time first."""
