@@ -6,7 +6,8 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
-from rotorpump.laws.stretch import End, Instant, Stretch
+from rotorpump.laws.moves import Instant
+from rotorpump.laws.stretch import End, Stretch
 from rotorpump.physics.constants import Constants
 from rotorpump.tasks import SpinUp
 
@@ -41,9 +42,12 @@ class Goal:
         )
 
     def met_at(self, instant: Instant) -> bool:
-        """Whether energy or speed suffice at this instant."""
+        """Whether energy or speed suffice at this instant, or a jump took it over the top."""
+        over = self.full_turn and abs(instant.angle) > math.pi
+        # a wheel that comes down from the top has not passed it, wherever its first jump turns it
+        over = over and (_outward(instant) or instant.time > 0.0)
         enough = instant.energy(self.constants) >= self.energy
-        return enough or instant.pace(self.constants) >= self.speed
+        return over or enough or instant.pace(self.constants) >= self.speed
 
     def met_by(self, stretch: Stretch) -> bool:
         """Whether the end of this stretch is the goal.
@@ -51,5 +55,10 @@ class Goal:
         The energy is not looked at: with the mass held, friction alone does work, so it cannot
         rise.
         """
-        passed = self.full_turn and stretch.end is End.TOP
+        passed = self.full_turn and stretch.end is End.TOP and _outward(stretch.last)
         return passed or stretch.end is End.SPEED
+
+
+def _outward(instant: Instant) -> bool:
+    """Whether the wheel turns away from where it hangs on this turn."""
+    return instant.angle * instant.direction > 0.0

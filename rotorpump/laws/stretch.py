@@ -10,10 +10,16 @@ from enum import Enum
 import numpy as np
 from numpy.typing import NDArray
 
+from rotorpump.laws.moves import Instant, jump_work, jumps_to
 from rotorpump.physics.constants import Constants
-from rotorpump.physics.energy import energy_above_rest
-from rotorpump.physics.equations import contact_force, total_inertia, wheel_speed
-from rotorpump.rig.rig import Rig
+from rotorpump.physics.equations import (
+    contact_forces,
+    momentum_rate,
+    wheel_acceleration,
+    wheel_speed,
+)
+from rotorpump.physics.state import Slides
+from rotorpump.rig.rig import AXES, Rig
 from rotorpump.solution.assembly import trajectory_of
 from rotorpump.solution.trajectory import Trajectory
 
@@ -32,33 +38,6 @@ class End(Enum):
     STUCK = "friction holds the wheel"
 
 
-@dataclass(frozen=True)
-class Instant:
-    """State of the rig at one instant, the mass at rest on its slide.
-
-    Parameters
-    ----------
-    time, angle, momentum, radial : float
-        Time [s], wheel angle [rad], angular momentum [kg m2/s], position of the mass [m].
-    direction : int, optional
-        Direction in which the wheel goes on, 0 if it stands or is not known yet.
-    """
-
-    time: float
-    angle: float
-    momentum: float
-    radial: float
-    direction: int = 0
-
-    def energy(self, constants: Constants) -> float:
-        """Energy above rest [J]."""
-        return float(energy_above_rest(np, constants, self.angle, self.momentum, self.radial, 0.0))
-
-    def pace(self, constants: Constants) -> float:
-        """Magnitude of the wheel speed [rad/s]."""
-        return abs(float(wheel_speed(constants, self.momentum, self.radial)))
-
-
 @dataclass(frozen=True, eq=False)
 class Stretch:
     """A smooth piece of motion with the mass held and the wheel turning one way.
@@ -67,20 +46,23 @@ class Stretch:
     ----------
     time, angle, momentum : ndarray, shape (n,)
         Nodes [s, rad, kg m2/s]; n is 1, 2, or one more than a multiple of three.
-    radial : float
-        Position of the mass [m].
+    slides : Slides
+        Place of the mass.
     direction : int
         1 or -1, or 0 where the wheel stands.
     end : End
         Why it ends.
+    axis : str, optional
+        The axis that switches, if a switch ends it.
     """
 
     time: Array
     angle: Array
     momentum: Array
-    radial: float
+    slides: Slides
     direction: int
     end: End
+    axis: str = ""
 
     @property
     def first(self) -> Instant:
@@ -97,7 +79,7 @@ class Stretch:
             float(self.time[node]),
             float(self.angle[node]),
             float(self.momentum[node]),
-            self.radial,
+            self.slides,
             self.direction,
         )
 
@@ -112,18 +94,24 @@ def still_at(instant: Instant) -> Stretch:
         np.array([instant.time]),
         np.array([instant.angle]),
         np.array([instant.momentum]),
-        instant.radial,
+        instant.slides,
         instant.direction,
         End.TIME,
     )
 
 
-def _breaks(size: int, offset: int) -> NDArray[np.intp]:
-    """Nodes at which the cubic pieces of a stretch of ``size`` nodes meet."""
-    return offset + np.arange(0, size, 3 if size > 2 else 1, dtype=np.intp)
+def work_along(constants: Constants, start: Instant, stretches: Sequence[Stretch]) -> float:
+    """Work of the drives over a motion, those that brake not counted [J]."""
+    befores = [start, *(stretch.last for stretch in stretches[:-1])]
+    return sum(
+        jump_work(constants, before, stretch.slides)
+        for before, stretch in zip(befores, stretches, strict=True)
+    )
 
 
-def trajectory_along(rig: Rig, start: Instant, stretches: Sequence[Stretch]) -> Trajectory:
+def trajectory_along(
+    rig: Rig, start: Instant, stretches: Sequence[Stretch], load_torque: float = 0.0
+) -> Trajectory:
     """Join stretches, which follow each other in time, to a trajectory.
 
     Parameters
@@ -131,47 +119,81 @@ def trajectory_along(rig: Rig, start: Instant, stretches: Sequence[Stretch]) -> 
     rig : Rig
         The rig that moves.
     start : Instant
-        Where the mass is before the first stretch; a jump follows if it differs.
+        Where the mass is before the first stretch; jumps follow if it differs.
     stretches : sequence of Stretch
         At least one.
+    load_torque : float, optional
+        Torque that a load takes from the wheel [N m].
 
     Returns
     -------
     Trajectory
-        Where the mass jumps, two nodes stand at one time, with an arc of no length between them;
-        where it stays, stretches share a node. ``radial_force`` is the whole force that holds the
-        mass, m (-ρ ω² - g cos φ): the impulse of a jump cannot be shown.
+        Where the mass jumps along an axis, two nodes stand at one time, with an arc of no length
+        between them; where it stays, stretches share a node. The forces of the drives are the
+        whole forces that hold the mass: the impulse of a jump cannot be shown.
     """
-    pieces = list(stretches)
-    if start.radial != pieces[0].radial:
-        pieces.insert(0, still_at(start))
+    constants = Constants.of(rig, load_torque)
+    pieces = _with_jumps(constants, start, stretches)
     columns: list[Array] = []
     breaks: list[NDArray[np.intp]] = []
     arcs: list[int] = []
     count = 0
     for index, piece in enumerate(pieces):
-        shared = index > 0 and pieces[index - 1].radial == piece.radial
+        shared = index > 0 and pieces[index - 1].slides == piece.slides
         offset = count - 1 if shared else count
         size = piece.time.size
-        held = np.full(size, piece.radial)
-        sign = np.full(size, float(piece.direction))
-        rows = np.vstack([piece.time, piece.angle, piece.momentum, held, sign])
+        still = [piece.slides.radial, piece.slides.tangential, float(piece.direction)]
+        rows = np.vstack(
+            [piece.time, piece.angle, piece.momentum, *(np.full(size, value) for value in still)]
+        )
         columns.append(rows[:, 1:] if shared else rows)
-        breaks.append(_breaks(size, offset))
+        breaks.append(offset + np.arange(0, size, 3 if size > 2 else 1, dtype=np.intp))
         arcs += [offset, offset + size - 1]
         count = offset + size
-    time, angle, momentum, radial, direction = np.hstack(columns)
-    constants = Constants.of(rig)
-    speed = momentum / total_inertia(constants, radial)
+    time, angle, momentum, radial, tangential, direction = np.hstack(columns)
+    slides = Slides(radial, 0.0, tangential, 0.0)
     return trajectory_of(
         rig,
         time,
         angle,
         momentum,
-        radial,
-        np.zeros_like(time),
-        contact_force(np, constants, angle, speed, radial, 0.0),
+        slides,
+        _holding_forces(rig, constants, angle, momentum, slides, direction),
         np.unique(np.concatenate(breaks)),
         np.unique(arcs),
         direction=direction,
+        load_torque=load_torque,
     )
+
+
+def _with_jumps(
+    constants: Constants, start: Instant, stretches: Sequence[Stretch]
+) -> list[Stretch]:
+    """Stretches, with the places that the jumps between them pass as stretches without length."""
+    pieces: list[Stretch] = []
+    before = start
+    for stretch in stretches:
+        jumps = jumps_to(constants, before, stretch.slides)
+        if jumps and not pieces:
+            pieces.append(still_at(start))
+        pieces += [still_at(passed) for passed in jumps[:-1]]
+        pieces.append(stretch)
+        before = stretch.last
+    return pieces
+
+
+def _holding_forces(
+    rig: Rig, constants: Constants, angle: Array, momentum: Array, slides: Slides, direction: Array
+) -> tuple[Array, Array]:
+    """Return the forces that hold the mass along the driven axes, zero along the others [N]."""
+    speed = wheel_speed(constants, momentum, slides)
+    rate = momentum_rate(np, constants, angle, speed, slides, direction)
+    free = wheel_acceleration(constants, rate, speed, slides, 0.0, 0.0)
+    # a standing wheel is held by static friction
+    wheel = np.where(direction == 0.0, 0.0, free)
+    forces = contact_forces(np, constants, angle, speed, wheel, slides, 0.0, 0.0)
+    radial, tangential = (
+        np.asarray(force) if axis in rig.driven else np.zeros_like(angle)
+        for axis, force in zip(AXES, forces, strict=True)
+    )
+    return radial, tangential
