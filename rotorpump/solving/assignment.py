@@ -3,37 +3,67 @@
 
 from __future__ import annotations
 
+import math
+
+from rotorpump.measures import COSTS, Measure
 from rotorpump.rig.rig import Rig
-from rotorpump.solution.trajectory import Trajectory
 from rotorpump.solving.seeds import Seed
-from rotorpump.tasks import Measure, Pump, Rotate, SpinUp, Task
-from rotorpump.transcription.interval import ANGLE, TIME, Form
-from rotorpump.transcription.path import FORCE_LIMITED, rung_of
+from rotorpump.tasks import Pump, Rotate, SpinUp, Task
+from rotorpump.transcription.form import ANGLE, TIME, Form
+from rotorpump.transcription.path import FORCE_LIMITED
 from rotorpump.transcription.problem import Goal, Problem, Start, Term
 from rotorpump.transcription.scaling import Scales
 
 
-def can_rest(rig: Rig) -> bool:
-    """Whether end stops bear load where the drive cannot."""
-    return rung_of(rig.radial) == FORCE_LIMITED and rig.radial.bearing
+def can_rest(rig: Rig, problem: Problem) -> bool:
+    """Whether a mass may rest on an end stop, which then bears a load."""
+    return any(axis.forceful and rig.slide(axis.name).bearing for axis in problem.form.axes)
 
 
-def assign(rig: Rig, task: Task, seed: Seed, *, relaxed: bool = False) -> Problem:
+def can_scout(rig: Rig, measure: Measure) -> bool:
+    """Whether a relaxed solve tells the pattern in which the mass rests on its stops.
+
+    It does where stops bear what the drive cannot; not where the drive's force is what counts, or
+    changes at a limited rate.
+    """
+    forms = Form.of(rig, TIME, measure.name).axes
+    bearing = any(axis.forceful and axis.bears for axis in forms)
+    return bearing and measure not in COSTS and all(a.rung <= FORCE_LIMITED for a in forms)
+
+
+def assign(rig: Rig, task: Task, measure: Measure, seed: Seed, *, relaxed: bool = False) -> Problem:
     """Pose the task on the seed's chain of arcs."""
-    form = Form(ANGLE if isinstance(task, Rotate) else TIME, rung_of(rig.radial), relaxed=relaxed)
+    independent = ANGLE if isinstance(task, Rotate) else TIME
+    form = Form.of(rig, independent, measure.name, relaxed=relaxed)
+    terms = terms_of(task, measure)
     if isinstance(task, Rotate):
-        return Problem(rig, form, seed.chain, (Term("time", 1.0),), None)
+        period = None if task.mean_speed is None else 2.0 * math.pi / task.mean_speed
+        return Problem(
+            rig, form, seed.chain, terms, None, horizon=period, load_torque=task.load_torque
+        )
     start = start_of(rig, task)
     if isinstance(task, Pump):
-        terms = (Term("energy", -1.0),)
         return Problem(rig, form, seed.chain, terms, start, horizon=task.duration)
-    return Problem(rig, form, seed.chain, (Term("time", 1.0),), start, goal=goal_of(rig, task))
+    goal = goal_of(rig, task)
+    return Problem(rig, form, seed.chain, terms, start, goal=goal, deadline=task.deadline)
+
+
+def terms_of(task: Task, measure: Measure) -> tuple[Term, ...]:
+    """Return the objective, which is minimised.
+
+    The most mean speed, and the most power into a given torque, take the least time for a turn.
+    """
+    if measure in COSTS:
+        return tuple(Term(name, 1.0) for name in measure.name.split("+"))
+    if isinstance(task, Pump):
+        return (Term(measure.name, -1.0),)
+    return (Term("time", 1.0),)
 
 
 def start_of(rig: Rig, task: Pump | SpinUp) -> Start:
     """State in which the task begins."""
-    radial = task.radial_in(rig)
-    return Start(task.start_angle, rig.inertia(radial) * task.start_speed, radial)
+    place = task.place_in(rig)
+    return Start(task.start_angle, rig.inertia(*place) * task.start_speed, *place)
 
 
 def goal_of(rig: Rig, task: SpinUp) -> Goal | None:
@@ -44,16 +74,6 @@ def goal_of(rig: Rig, task: SpinUp) -> Goal | None:
     if task.speed is not None:
         return Goal("speed", (task.speed * scales.time) ** 2)
     return None
-
-
-def reached_value(task: Task, trajectory: Trajectory) -> float:
-    """Value of the task's default objective that a motion reaches."""
-    if isinstance(task, Pump):
-        return float(trajectory.energy[-1])
-    if isinstance(task, SpinUp):
-        return trajectory.duration
-    turned = trajectory.angle[-1] - trajectory.angle[0]
-    return float(turned / trajectory.duration)
 
 
 def gain(measure: Measure, value: float, other: float) -> float:

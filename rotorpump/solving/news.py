@@ -6,6 +6,7 @@ from __future__ import annotations
 import math
 from dataclasses import dataclass
 
+from rotorpump.measures import COSTS, Measure
 from rotorpump.rig.rig import Rig
 from rotorpump.solution.progress import Progress, Watcher
 from rotorpump.solving.ipopt import Monitor
@@ -19,14 +20,15 @@ class Reporter:
 
     Parameters
     ----------
-    rig, task : Rig, Task
-        What is being solved.
+    rig, task, measure : Rig, Task, Measure
+        What is being solved, and for what.
     watcher : callable or None
         What takes the news, if anyone does.
     """
 
     rig: Rig
     task: Task
+    measure: Measure
     watcher: Watcher | None
 
     def tell(self, stage: str) -> None:
@@ -46,10 +48,15 @@ class Reporter:
         return report
 
     def _value(self, objective: float) -> float:
-        scales = Scales.of(self.rig)
+        scales, name = Scales.of(self.rig), self.measure.name
+        if self.measure in COSTS:
+            return float(objective * scales.energy)
         if isinstance(self.task, Pump):
-            return float(-objective * scales.energy)
+            units = {"energy": scales.energy, "momentum": scales.momentum, "speed": 1 / scales.time}
+            size = -objective if name == "energy" else math.sqrt(max(-objective, 0.0))
+            return float(size * units[name])
         seconds = float(objective * scales.time)
         if isinstance(self.task, Rotate):
-            return 2.0 * math.pi / seconds if seconds > 0.0 else math.nan
+            speed = 2.0 * math.pi / seconds if seconds > 0.0 else math.nan
+            return self.task.load_torque * speed if name == "load power" else speed
         return seconds

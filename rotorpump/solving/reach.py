@@ -15,19 +15,25 @@ import numpy as np
 
 from rotorpump.laws.instantaneous import run_ideal
 from rotorpump.laws.trials import Trial, energy_of, goal_measure
+from rotorpump.measures import MEASURES
 from rotorpump.physics.constants import Constants
+from rotorpump.physics.equations import angular_momentum
 from rotorpump.physics.friction import friction_torque
-from rotorpump.rig.rig import Rig
+from rotorpump.physics.state import Slides
+from rotorpump.rig.rig import AXES, Rig
 from rotorpump.solution.status import Status
 from rotorpump.solution.trajectory import Trajectory
-from rotorpump.solving.assignment import assign, start_of
+from rotorpump.solving.assignment import start_of
 from rotorpump.solving.ipopt import Monitor
-from rotorpump.solving.routes import Candidate, solve_posed
+from rotorpump.solving.routes import Candidate, Wanted, solve_posed
 from rotorpump.solving.seeds import Seed, guess_of, seed_of
-from rotorpump.tasks import Pump, Rotate, SpinUp
+from rotorpump.tasks import Rotate, SpinUp
 from rotorpump.transcription.arcs import cut_into_arcs
+from rotorpump.transcription.form import ANGLE, TIME, Form
 from rotorpump.transcription.guess import Guess
-from rotorpump.transcription.problem import Term
+from rotorpump.transcription.problem import Problem, Term
+
+TIME_MEASURE, SPEED_MEASURE = MEASURES[SpinUp][0], MEASURES[Rotate][0]
 
 DENSE = 1001
 """Samples of a turn whose losses are added up."""
@@ -58,8 +64,11 @@ class Reach:
     message: str
 
 
-def reach_goal(rig: Rig, task: SpinUp, trials: Sequence[Trial], monitor: Monitor | None) -> Reach:
+def reach_goal(
+    wanted: Wanted, task: SpinUp, trials: Sequence[Trial], monitor: Monitor | None
+) -> Reach:
     """Drive the goal's quantity as high as it gets in the time in which the law saturates."""
+    rig = wanted.rig
     measure, goal = goal_measure(rig, task)
     best = max(trials, key=lambda trial: float(measure(trial.run.states).max()))
     highest = float(measure(best.run.states).max())
@@ -71,9 +80,10 @@ def reach_goal(rig: Rig, task: SpinUp, trials: Sequence[Trial], monitor: Monitor
         chain, ends = cut_into_arcs(guess)
         seed = Seed(guess, chain, ends)
         sign = -1.0 if name != "angle" else -float(chain[-1].direction)
-        posed = assign(rig, Pump(duration=1.0, start_angle=task.start_angle), seed)
-        posed = replace(posed, terms=(Term(name, sign),), start=start_of(rig, task), horizon=None)
-        candidate = solve_posed(task, posed, seed, monitor)
+        terms = (Term(name, sign),)
+        form = Form.of(rig, TIME, "time")
+        posed = Problem(rig, form, chain, terms, start_of(rig, task), deadline=task.deadline)
+        candidate = solve_posed(replace(wanted, measure=TIME_MEASURE), posed, seed, monitor)
         if candidate.outcome.status is Status.INTERRUPTED:
             raise KeyboardInterrupt
         if candidate.solved:
@@ -82,10 +92,11 @@ def reach_goal(rig: Rig, task: SpinUp, trials: Sequence[Trial], monitor: Monitor
                 found = seed_of(task, Guess.from_trajectory(candidate.trajectory))
                 return Reach(found, candidate, "")
             highest = max(highest, reached)
+    within = "" if task.deadline is None else f" within {task.deadline:g} s"
     return Reach(
         None,
         candidate,
-        f"the goal is out of reach: {name} {goal:.6g} {unit} is asked for,"
+        f"the goal is out of reach: {name} {goal:.6g} {unit} is asked for{within},"
         f" the highest reached is {highest:.6g} {unit}",
     )
 
@@ -94,9 +105,9 @@ def _climb(rig: Rig, trial: Trial) -> Guess | None:
     """Return a saturated run of the law up to its highest energy, if it moves at all."""
     energy = energy_of(rig, trial.run.states)
     until = int(np.argmax(energy >= 0.999 * energy.max()))
-    if until < 2 or not np.any(trial.run.states[1]):
+    if until < 2 or not np.ptp(trial.run.states[0]):
         return None
-    guess = guess_of(trial.run.cut(until))
+    guess = guess_of(rig, trial.run.cut(until))
     _, ends = cut_into_arcs(guess)
     return guess.cut(0.0, ends[MOST_ARCS - 1]) if len(ends) > MOST_ARCS else guess
 
@@ -106,20 +117,27 @@ def _final(name: str, trajectory: Trajectory) -> float:
     return abs(float(getattr(trajectory, name)[-1]))
 
 
-def reach_rotation(rig: Rig, task: Rotate, monitor: Monitor | None) -> Reach:
+def reach_rotation(wanted: Wanted, task: Rotate, monitor: Monitor | None) -> Reach:
     """Look for a turn that gains momentum; if even the best one loses, there is no rotation.
 
     Turns of several durations are looked at: the slower a turn, the less it loses to drag.
     """
+    rig = wanted.rig
     best: Candidate | None = None
-    for factor in TURN_DURATIONS:
-        seed = _plain_turn(rig, factor)
+    for duration in _turn_durations(rig, task):
+        seed = _plain_turn(rig, duration)
         gains = (Term("momentum", -1.0), Term("momentum", 1.0, at_start=True))
-        duration = float(np.interp(2.0 * math.pi, seed.guess.angle, seed.guess.time))
-        posed = replace(
-            assign(rig, task, seed), terms=gains, closed_momentum=False, horizon=duration
+        posed = Problem(
+            rig,
+            Form.of(rig, ANGLE, "speed"),
+            seed.chain,
+            gains,
+            None,
+            horizon=duration,
+            closed_momentum=False,
+            load_torque=task.load_torque,
         )
-        candidate = solve_posed(task, posed, seed, monitor)
+        candidate = solve_posed(replace(wanted, measure=SPEED_MEASURE), posed, seed, monitor)
         if candidate.outcome.status is Status.INTERRUPTED:
             raise KeyboardInterrupt
         if candidate.solved and (best is None or _gained(candidate) > _gained(best)):
@@ -130,12 +148,15 @@ def reach_rotation(rig: Rig, task: Rotate, monitor: Monitor | None) -> Reach:
     if best is None:
         ideal = run_ideal(rig, task).message
         return Reach(None, None, f"{reason}, not even by the instantaneous law: {ideal}")
-    work, loss = turn_balance(rig, best.trajectory)
+    balance = turn_balance(rig, best.trajectory, task.load_torque)
+    takers = f"friction takes {balance.friction:.4g} J"
+    if task.load_torque > 0.0:
+        takers += f", the load {balance.load:.4g} J"
     return Reach(
         None,
         best,
-        f"{reason}: in the best turn found, of {best.trajectory.duration:.3g} s, friction takes"
-        f" {loss:.4g} J and the drive adds {work:.4g} J",
+        f"{reason}: in the best turn found, of {best.trajectory.duration:.3g} s, {takers}"
+        f" and the drive adds {balance.drive:.4g} J",
     )
 
 
@@ -144,43 +165,60 @@ def _gained(candidate: Candidate) -> float:
     return float(momentum[-1] ** 2 - momentum[0] ** 2)
 
 
-def _plain_turn(rig: Rig, factor: float) -> Seed:
-    """Make up a turn that begins fast enough to lose to friction what it must.
+def _turn_durations(rig: Rig, task: Rotate) -> list[float]:
+    """Durations of the turns to look at [s]: the one that is asked for, or several."""
+    if task.mean_speed is not None:
+        return [2.0 * math.pi / task.mean_speed]
+    fast = 2.0 * math.pi / (2.0 * _least_speed(rig))
+    return [factor * fast for factor in TURN_DURATIONS]
 
-    It is made slower by ``factor`` than a turn at twice the speed that just passes the top.
-    """
-    constants = Constants.of(rig)
-    inner, outer = rig.radial.stroke
-    middle, sway = (inner + outer) / 2.0, 0.4 * rig.radial.length
-    inertia = rig.inertia(middle)
-    least = math.sqrt(4.0 * constants.mass * constants.gravity * outer / inertia)
+
+def _least_speed(rig: Rig) -> float:
+    """Wheel speed that just carries the wheel over the top [rad/s]."""
+    c = Constants.of(rig)
+    inertia = rig.inertia(*(sum(rig.stroke(axis)) / 2.0 for axis in AXES))
+    return math.sqrt(4.0 * c.gravity * c.lowest_moment / inertia)
+
+
+def _plain_turn(rig: Rig, duration: float) -> Seed:
+    """Make up a turn of the given duration: the mass sways once, ahead of the wheel."""
     angle = np.linspace(0.0, 2.0 * math.pi, 400)
-    slope = -friction_torque(constants, least, 1.0) / least
-    speed = (2.0 * least + slope * (2.0 * math.pi - angle) / inertia) / factor
-    # SciPy's subpackages take longer to load than all the rest: only when needed
-    from scipy.integrate import cumulative_trapezoid  # noqa: PLC0415
-
-    time = cumulative_trapezoid(1.0 / speed, angle, initial=0.0)
-    guess = Guess(
-        time,
-        angle,
-        inertia * speed,
-        middle - sway * np.sin(angle),
-        -sway * speed * np.cos(angle),
-    )
+    speed = np.full_like(angle, 2.0 * math.pi / duration)
+    swing = {
+        "radial": (-np.sin(angle), -np.cos(angle)),
+        "tangential": (-np.cos(angle), np.sin(angle)),
+    }
+    places, paces = {}, {}
+    for axis in AXES:
+        low, high = rig.stroke(axis)
+        shape, slope = swing[axis]
+        places[axis] = 0.5 * (low + high) + 0.4 * (high - low) * shape
+        paces[axis] = 0.4 * (high - low) * slope * speed
+    slides = Slides(places["radial"], paces["radial"], places["tangential"], paces["tangential"])
+    momentum = angular_momentum(Constants.of(rig), speed, slides)
+    time = angle / speed
+    guess = Guess(time, angle, np.asarray(momentum), speed, *slides)
     return seed_of(Rotate(), guess)
 
 
-def turn_balance(rig: Rig, trajectory: Trajectory) -> tuple[float, float]:
-    """Work of the drive and loss by friction over a motion [J].
+@dataclass(frozen=True)
+class TurnBalance:
+    """What the drives add over a motion, and what friction and load take [J]."""
 
-    The work follows from the balance of energy: rise of energy plus loss.
-    """
+    drive: float
+    friction: float
+    load: float
+
+
+def turn_balance(rig: Rig, trajectory: Trajectory, load_torque: float) -> TurnBalance:
+    """Balance the energy of a motion; the drives' share follows from the other parts."""
     constants = Constants.of(rig)
     dense = trajectory.at(np.linspace(trajectory.time[0], trajectory.time[-1], DENSE))
-    torque = friction_torque(constants, dense.speed, np.sign(dense.speed))
+    torque = friction_torque(constants, dense.speed, np.sign(dense.speed), dense.axle_load)
     # SciPy's subpackages take longer to load than all the rest: only when needed
     from scipy.integrate import simpson  # noqa: PLC0415
 
-    loss = float(simpson(-torque * dense.speed, x=dense.time))
-    return float(trajectory.energy[-1] - trajectory.energy[0]) + loss, loss
+    friction = float(simpson(-torque * dense.speed, x=dense.time))
+    load = float(load_torque * simpson(np.abs(dense.speed), x=dense.time))
+    rise = float(trajectory.energy[-1] - trajectory.energy[0])
+    return TurnBalance(rise + friction + load, friction, load)

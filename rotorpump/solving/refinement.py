@@ -8,30 +8,37 @@ from dataclasses import replace
 import numpy as np
 from numpy.typing import NDArray
 
-from rotorpump.physics.constants import Constants
-from rotorpump.physics.equations import contact_force, momentum_rate, wheel_speed
 from rotorpump.solution.status import Status
+from rotorpump.solving.carrying import carry_multipliers
 from rotorpump.solving.ipopt import Monitor, Settings, run_ipopt
-from rotorpump.solving.routes import Candidate, candidate_of
-from rotorpump.tasks import Task
-from rotorpump.transcription.guess import Guess
+from rotorpump.solving.routes import Candidate, Wanted, candidate_of
+from rotorpump.transcription.division import Division, divide_variables
 from rotorpump.transcription.mesh import FREE
-from rotorpump.transcription.path import FORCE_LIMITED
 from rotorpump.transcription.program import Program
-from rotorpump.transcription.recovery import motion_within, node_marks
+from rotorpump.transcription.recovery import (
+    Record,
+    SlidesWithin,
+    drive_forces,
+    node_marks,
+    rubbing_forces,
+    seats,
+)
 
 Array = NDArray[np.float64]
-
-SUBSTEPS = 8
-"""Steps of the classical Runge-Kutta method that an interval is integrated with."""
 
 GROWTH = 5.0
 """Factor by which an error of the slide's speed may grow in the rest of an arc, e to the π/2."""
 
+BARRIER = 1e-4
+"""First barrier parameter on a finer mesh."""
+
 MOST_ITERATIONS = 250
 """Iterations of a solve on a finer mesh."""
 
-MOST_PIECES = 4
+SAFETY = 2.0
+"""Factor on the errors, so that one round is enough as a rule."""
+
+MOST_PIECES = 5
 """Pieces that an interval is divided into at most at once."""
 
 ROUNDS = 3
@@ -41,62 +48,69 @@ ROUNDS = 3
 def interval_errors(program: Program, z: Array) -> Array:
     """Estimate the error of each interval, relative, shape (intervals,).
 
-    The larger of two: how far angle and momentum at its end are from an integration of the
-    equations over it, and how much speed the interpolated drive force would miss over it.
+    The equations are integrated over each interval. The error is the larger of two: how far angle
+    and momentum at its end are from that, and how much speed of a slide the recorded drive force
+    would miss over it.
     """
-    rig, scales = program.problem.rig, program.scales
-    constants = Constants.of(rig)
-    layout = program.layout
-    duration = np.diff(z[layout.node[:, 0]])[:, None] * scales.time
-    direction = program.directions[:, None]
-    path = motion_within(program, z)
-    angle = z[layout.node[:-1, 1]][:, None]
-    momentum = z[layout.node[:-1, 2]][:, None] * scales.momentum
-    step = duration / SUBSTEPS
-
-    def rates(elapsed: Array, angle: Array, momentum: Array) -> tuple[Array, Array]:
-        radial = path.position(elapsed)
-        speed = wheel_speed(constants, momentum, radial)
-        return speed, momentum_rate(np, constants, angle, speed, radial, direction)
-
-    forces = []
-    for k in range(SUBSTEPS):
-        now = k * step
-        first = rates(now, angle, momentum)
-        second = rates(now + step / 2, angle + step / 2 * first[0], momentum + step / 2 * first[1])
-        third = rates(now + step / 2, angle + step / 2 * second[0], momentum + step / 2 * second[1])
-        fourth = rates(now + step, angle + step * third[0], momentum + step * third[1])
-        angle = angle + step / 6 * (first[0] + 2 * second[0] + 2 * third[0] + fourth[0])
-        momentum = momentum + step / 6 * (first[1] + 2 * second[1] + 2 * third[1] + fourth[1])
-        if program.problem.form.rung == FORCE_LIMITED:
-            later = now + step
-            radial = path.position(later)
-            speed = wheel_speed(constants, momentum, radial)
-            acceleration = path.acceleration(later)
-            forces.append(contact_force(np, constants, angle, speed, radial, acceleration))
-    largest = float(np.abs(z[layout.node[:, 2]]).max())
+    scales, layout = program.scales, program.layout
+    within, record = SlidesWithin.of(program, z), Record.of(program, z)
+    angle, momentum = record.angle[:, :1], record.momentum[:, :1]
+    axes = program.problem.form.axes
+    missed = [np.zeros(program.mesh.intervals) for _ in axes]
+    recorded = _needed_forces(program, within, *record)
+    given = [drive_forces(program, z, k, force) for k, force in enumerate(recorded)]
+    for k in range(record.elapsed.shape[1] - 1):
+        begin, end = record.elapsed[:, k : k + 1], record.elapsed[:, k + 1 : k + 2]
+        angle, momentum = _advance(within, begin, end - begin, angle, momentum)
+        needed = _needed_forces(program, within, end, angle, momentum)
+        for number, force in enumerate(needed):
+            off = np.abs(force[:, 0] - given[number][:, k + 1])
+            missed[number] = np.maximum(missed[number], off)
+    largest = float(np.abs(z[layout.nodes("momentum")]).max()) * scales.momentum
     error = np.maximum(
-        np.abs(angle[:, 0] - z[layout.node[1:, 1]]),
-        np.abs(momentum[:, 0] / scales.momentum - z[layout.node[1:, 2]]) / largest,
+        np.abs(angle[:, 0] - record.angle[:, -1]),
+        np.abs(momentum[:, 0] - record.momentum[:, -1]) / largest,
     )
-    if forces:
-        missed = _missed_force(np.hstack(forces)) * duration[:, 0] / rig.mass / scales.speed
-        error = np.maximum(error, np.where(program.mesh.rests == FREE, GROWTH * missed, 0.0))
+    for k, axis in enumerate(axes):
+        if axis.forceful:
+            impulse = GROWTH * missed[k] * record.elapsed[:, -1]
+            lost = impulse / program.problem.rig.mass / scales.slide(axis.name).speed
+            error = np.maximum(error, np.where(seats(program, z, k) == FREE, lost, 0.0))
     return np.asarray(error)
 
 
-def _missed_force(force: Array) -> Array:
-    """Largest distance of the force from a parabola through three of its samples [N]."""
-    samples = np.arange(1, SUBSTEPS + 1)
-    chosen = [1, SUBSTEPS // 2, SUBSTEPS - 1]
-    fit = np.polynomial.polynomial.polyvander(samples[chosen], 2)
-    everywhere = np.polynomial.polynomial.polyvander(samples, 2)
-    parabola = force[:, chosen] @ np.linalg.solve(fit.T, everywhere.T)
-    return np.asarray(np.abs(parabola - force).max(axis=1))
+def _advance(
+    within: SlidesWithin, now: Array, step: Array, angle: Array, momentum: Array
+) -> tuple[Array, Array]:
+    """Make a step of the classical Runge-Kutta method in all intervals at once."""
+
+    def rates(elapsed: Array, angle: Array, momentum: Array) -> tuple[Array, Array]:
+        return within.motion(elapsed, angle, momentum)[:2]
+
+    first = rates(now, angle, momentum)
+    second = rates(now + step / 2, angle + step / 2 * first[0], momentum + step / 2 * first[1])
+    third = rates(now + step / 2, angle + step / 2 * second[0], momentum + step / 2 * second[1])
+    fourth = rates(now + step, angle + step * third[0], momentum + step * third[1])
+    return (
+        angle + step / 6 * (first[0] + 2 * second[0] + 2 * third[0] + fourth[0]),
+        momentum + step / 6 * (first[1] + 2 * second[1] + 2 * third[1] + fourth[1]),
+    )
+
+
+def _needed_forces(
+    program: Program, within: SlidesWithin, elapsed: Array, angle: Array, momentum: Array
+) -> list[Array]:
+    """Force that each drive has to exert on a free mass at given states [N]."""
+    motion = within.motion(elapsed, angle, momentum)[2]
+    pair = {"radial": motion.radial_contact, "tangential": motion.tangential_contact}
+    return [
+        np.broadcast_to(pair[axis.name], angle.shape) + rubbing_forces(program, k)
+        for k, axis in enumerate(program.problem.form.axes)
+    ]
 
 
 def refine(
-    task: Task, candidate: Candidate, accuracy: float, monitor: Monitor | None
+    wanted: Wanted, candidate: Candidate, accuracy: float, monitor: Monitor | None
 ) -> tuple[Candidate, int]:
     """Divide inaccurate intervals and solve again, until the accuracy holds.
 
@@ -112,11 +126,11 @@ def refine(
         if errors.max() <= accuracy:
             return candidate, rounds
         # Both estimates shrink with about the third power of the length.
-        wanted = np.ceil(np.cbrt(errors / accuracy)).astype(np.intp)
+        pieces = np.ceil(np.cbrt(SAFETY * errors / accuracy)).astype(np.intp)
         # Switches move a little when the mesh changes: their neighbours are divided as well.
-        wanted[1:] = np.maximum(wanted[1:], np.minimum(wanted[:-1], 2))
-        wanted[:-1] = np.maximum(wanted[:-1], np.minimum(wanted[1:], 2))
-        finer = _solve_on_finer(task, candidate, np.clip(wanted, 1, MOST_PIECES), monitor)
+        pieces[1:] = np.maximum(pieces[1:], np.minimum(pieces[:-1], 2))
+        pieces[:-1] = np.maximum(pieces[:-1], np.minimum(pieces[1:], 2))
+        finer = _solve_on_finer(wanted, candidate, np.clip(pieces, 1, MOST_PIECES), monitor)
         if finer.outcome.status is Status.INTERRUPTED:
             return finer, rounds
         if not finer.solved:
@@ -126,15 +140,18 @@ def refine(
 
 
 def _solve_on_finer(
-    task: Task, candidate: Candidate, pieces: NDArray[np.intp], monitor: Monitor | None
+    wanted: Wanted, candidate: Candidate, pieces: NDArray[np.intp], monitor: Monitor | None
 ) -> Candidate:
-    program = candidate.program
-    marks = node_marks(program, candidate.outcome.variables)
-    mesh = program.mesh.settled(marks).split(pieces)
-    finer = replace(program, mesh=mesh)
-    ends = [float(marks[k]) for k in program.mesh.edges[1:]]
-    start = finer.start_from(Guess.from_trajectory(candidate.trajectory), ends)
-    outcome = run_ipopt(
-        finer, start, Settings(barrier=1e-3, iterations=MOST_ITERATIONS), monitor=monitor
+    program, variables = candidate.program, candidate.outcome.variables
+    division = Division.of(pieces)
+    finer = replace(
+        program, mesh=program.mesh.settled(node_marks(program, variables)).split(pieces)
     )
-    return candidate_of(task, finer, outcome, candidate.iterations + outcome.iterations)
+    outcome = run_ipopt(
+        finer,
+        divide_variables(program, variables, finer, division),
+        Settings(barrier=BARRIER, iterations=MOST_ITERATIONS),
+        multipliers=carry_multipliers(program, candidate.outcome, finer, division),
+        monitor=monitor,
+    )
+    return candidate_of(wanted, finer, outcome, candidate.iterations + outcome.iterations)

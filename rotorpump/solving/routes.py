@@ -13,14 +13,17 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
+from rotorpump.measures import Measure
 from rotorpump.rig.rig import Rig
+from rotorpump.solution.reached import reached_value
 from rotorpump.solution.status import Status
 from rotorpump.solution.trajectory import Trajectory
-from rotorpump.solving.assignment import assign, can_rest, reached_value
+from rotorpump.solving.assignment import assign, can_rest
 from rotorpump.solving.ipopt import Monitor, Outcome, Settings, run_ipopt
 from rotorpump.solving.seeds import Seed
 from rotorpump.tasks import Task
-from rotorpump.transcription.mesh import FREE, INNER, OUTER, Mesh
+from rotorpump.transcription.guess import Guess
+from rotorpump.transcription.mesh import FREE, HIGH, LOW, Marks, Mesh
 from rotorpump.transcription.problem import Problem
 from rotorpump.transcription.program import Program
 from rotorpump.transcription.recovery import node_marks, recover_trajectory
@@ -44,6 +47,15 @@ MOST_ITERATIONS = 300
 
 PATTERNS = 2
 """Corrections of the pattern of resting intervals at most."""
+
+
+@dataclass(frozen=True)
+class Wanted:
+    """What is asked: the rig, the task, and the objective."""
+
+    rig: Rig
+    task: Task
+    measure: Measure
 
 
 @dataclass(frozen=True, eq=False)
@@ -76,54 +88,60 @@ class Candidate:
         return self.outcome.status.success
 
 
-def take_direct(rig: Rig, task: Task, seed: Seed, monitor: Monitor | None) -> Candidate:
+def take_direct(wanted: Wanted, seed: Seed, monitor: Monitor | None) -> Candidate:
     """Solve with the resting intervals of the starting motion."""
-    return solve_posed(task, assign(rig, task, seed), seed, monitor)
+    problem = assign(wanted.rig, wanted.task, wanted.measure, seed)
+    return solve_posed(wanted, problem, seed, monitor)
 
 
-def solve_posed(task: Task, problem: Problem, seed: Seed, monitor: Monitor | None) -> Candidate:
+def solve_posed(wanted: Wanted, problem: Problem, seed: Seed, monitor: Monitor | None) -> Candidate:
     """Solve a problem from a seed, with the resting intervals of the seed."""
-    rig = problem.rig
     mesh = _first_mesh(problem, flexible=True)
     program = Program(problem, mesh)
     start = program.start_from(seed.guess, seed.ends)
-    if can_rest(rig):
-        program = Program(problem, mesh.with_rests(find_rests(program, start), flexible=True))
+    if can_rest(problem.rig, problem) or any(axis.rubs for axis in problem.form.axes):
+        program = Program(problem, _with_pattern(program, start, mesh))
         start = program.variable_bounds.clip(start)
-    return _settle(task, program, start, Settings(iterations=MOST_ITERATIONS), monitor, 0)
+    return _settle(wanted, program, start, Settings(iterations=MOST_ITERATIONS), monitor, 0)
 
 
-def relax(
-    rig: Rig, task: Task, seed: Seed, monitor: Monitor | None, *, finer: float = 1.0
-) -> Candidate:
+def relax(wanted: Wanted, seed: Seed, monitor: Monitor | None, *, finer: float = 1.0) -> Candidate:
     """Solve with relaxed end stops, on equal intervals: quick, and a little too rosy."""
-    problem = assign(rig, task, seed, relaxed=True)
+    problem = assign(wanted.rig, wanted.task, wanted.measure, seed, relaxed=True)
     program = Program(problem, _first_mesh(problem, flexible=False, finer=finer), RELAXATION)
     start = program.start_from(seed.guess, seed.ends)
     settings = Settings(tolerance=1e-4, iterations=RELAXED_ITERATIONS)
     outcome = run_ipopt(program, start, settings, monitor=monitor)
-    return candidate_of(task, program, outcome, outcome.iterations)
+    return candidate_of(wanted, program, outcome, outcome.iterations)
 
 
-def settle_relaxed(task: Task, relaxed: Candidate, monitor: Monitor | None) -> Candidate:
+def settle_relaxed(
+    wanted: Wanted, relaxed: Candidate, seed: Seed, monitor: Monitor | None
+) -> Candidate:
     """Take the resting intervals from a relaxed solution, and solve with these."""
     program, variables = relaxed.program, relaxed.outcome.variables
     problem = program.problem
-    rests = find_rests(program, variables)
-    mesh = program.mesh.settled(node_marks(program, variables)).with_rests(rests, flexible=True)
-    strict = Program(replace(problem, form=replace(problem.form, relaxed=False)), mesh)
-    start = strict.variable_bounds.clip(variables)
+    mesh = program.mesh.settled(node_marks(program, variables))
+    mesh = _with_pattern(program, variables, mesh)
+    strict = Program(assign(problem.rig, wanted.task, wanted.measure, seed), mesh)
+    if strict.problem.form.node == problem.form.node:
+        start = strict.variable_bounds.clip(variables)
+    else:
+        marks = node_marks(program, variables)
+        ends = [float(marks[k]) for k in program.mesh.edges[1:]]
+        start = strict.start_from(Guess.from_trajectory(relaxed.trajectory), ends)
     settings = Settings(barrier=1e-2, iterations=MOST_ITERATIONS)
-    return _settle(task, strict, start, settings, monitor, relaxed.iterations)
+    return _settle(wanted, strict, start, settings, monitor, relaxed.iterations)
 
 
 def _first_mesh(problem: Problem, *, flexible: bool, finer: float = 1.0) -> Mesh:
     intervals = round(finer * (PER_HALF_TURN if problem.start is None else PER_ARC))
-    return Mesh.uniform(len(problem.chain), intervals, flexible=flexible)
+    axes = len(problem.form.axes)
+    return Mesh.uniform(len(problem.chain), intervals, axes, flexible=flexible)
 
 
 def _settle(
-    task: Task,
+    wanted: Wanted,
     program: Program,
     start: Array,
     settings: Settings,
@@ -132,22 +150,19 @@ def _settle(
 ) -> Candidate:
     """Solve, and correct the pattern of resting intervals while that helps."""
     outcome = run_ipopt(program, start, settings, monitor=monitor)
-    best = candidate_of(task, program, outcome, spent + outcome.iterations)
-    if not can_rest(program.problem.rig):
-        return best
+    best = candidate_of(wanted, program, outcome, spent + outcome.iterations)
     for _ in range(PATTERNS):
         if not best.solved:
             return best
-        variables = best.outcome.variables
-        rests = find_rests(best.program, variables)
-        if np.array_equal(rests, best.program.mesh.rests):
+        variables, mesh = best.outcome.variables, best.program.mesh
+        fresh_mesh = _with_pattern(best.program, variables, mesh)
+        if _same_pattern(fresh_mesh, mesh):
             return best
-        mesh = best.program.mesh.with_rests(rests, flexible=True)
-        again = Program(program.problem, mesh)
+        again = Program(program.problem, fresh_mesh)
         start = again.variable_bounds.clip(variables)
         outcome = run_ipopt(again, start, Settings(barrier=1e-2), monitor=monitor)
         spent = best.iterations + outcome.iterations
-        fresh = candidate_of(task, again, outcome, spent)
+        fresh = candidate_of(wanted, again, outcome, spent)
         if outcome.status is Status.INTERRUPTED:
             return fresh
         if not fresh.solved or outcome.objective >= best.outcome.objective:
@@ -156,20 +171,53 @@ def _settle(
     return best
 
 
-def candidate_of(task: Task, program: Program, outcome: Outcome, iterations: int) -> Candidate:
+def candidate_of(wanted: Wanted, program: Program, outcome: Outcome, iterations: int) -> Candidate:
     """Recover the motion of an outcome."""
     trajectory = recover_trajectory(program, outcome.variables)
-    return Candidate(program, outcome, trajectory, reached_value(task, trajectory), iterations)
+    value = reached_value(wanted.rig, wanted.task, wanted.measure, trajectory)
+    return Candidate(program, outcome, trajectory, value, iterations)
 
 
-def find_rests(program: Program, z: Array) -> NDArray[np.intp]:
-    """Intervals throughout which the mass rests on an end stop, shape (intervals,)."""
-    node = program.layout.node
-    position, speed = z[node[:, 3]], np.abs(z[node[:, 4]])
+def _same_pattern(one: Mesh, other: Mesh) -> bool:
+    return np.array_equal(one.rests, other.rests) and np.array_equal(one.signs, other.signs)
+
+
+def _with_pattern(program: Program, z: Array, mesh: Mesh) -> Mesh:
+    """Return ``mesh`` with the pattern of resting intervals and directions that variables show."""
+    rests, signs = mesh.rests.copy(), mesh.signs.copy()
+    for k, axis in enumerate(program.problem.form.axes):
+        if axis.forceful and program.problem.rig.slide(axis.name).bearing:
+            rests[k] = find_rests(program, z, k)
+        if axis.rubs:
+            signs[k] = _find_signs(program, z, k)
+    return mesh.with_pattern(rests, signs, flexible=True)
+
+
+def find_rests(program: Program, z: Array, axis: int) -> Marks:
+    """Intervals throughout which the mass rests on an end stop of an axis, shape (intervals,)."""
+    name = program.problem.form.axes[axis].name
+    position = z[program.layout.nodes(name)]
+    speed = np.abs(z[program.layout.nodes(f"{name}_speed")])
     still = (speed[:-1] < CREEP) & (speed[1:] < CREEP)
     outside = still & (position[:-1] > 1.0 - SEAT) & (position[1:] > 1.0 - SEAT)
     inside = still & (position[:-1] < SEAT) & (position[1:] < SEAT)
-    rests = np.where(outside, OUTER, np.where(inside, INNER, FREE))
+    rests = np.where(outside, HIGH, np.where(inside, LOW, FREE))
     if program.problem.start is not None and position[0] not in (0.0, 1.0):
         rests[0] = FREE
     return rests.astype(np.intp)
+
+
+def _find_signs(program: Program, z: Array, axis: int) -> Marks:
+    """Direction in which the mass moves along an axis in each interval, shape (intervals,).
+
+    An interval in which it does not move takes the direction of the next one that does: the mass
+    is about to set out there.
+    """
+    name = program.problem.form.axes[axis].name
+    moved = np.diff(z[program.layout.nodes(name)])
+    signs = np.where(np.abs(moved) > SEAT, np.sign(moved), 0.0)
+    following = 1.0
+    for k in range(signs.size - 1, -1, -1):
+        following = signs[k] or following
+        signs[k] = following
+    return signs.astype(np.intp)

@@ -13,14 +13,13 @@ from dataclasses import dataclass, field
 from functools import partial
 from itertools import zip_longest
 
-from rotorpump.rig.rig import Rig
 from rotorpump.solution.status import Status
-from rotorpump.solving.assignment import can_rest, gain
+from rotorpump.solving.assignment import can_scout, gain
 from rotorpump.solving.ipopt import Monitor
 from rotorpump.solving.news import Reporter
-from rotorpump.solving.routes import Candidate, relax, settle_relaxed, take_direct
+from rotorpump.solving.routes import Candidate, Wanted, relax, settle_relaxed, take_direct
 from rotorpump.solving.seeds import Seed
-from rotorpump.tasks import Pump, Rotate, SpinUp, Task, measure
+from rotorpump.tasks import Pump, Rotate, SpinUp, Task
 from rotorpump.transcription.arcs import signature
 from rotorpump.transcription.guess import Guess
 from rotorpump.transcription.recovery import node_marks
@@ -50,23 +49,22 @@ class Search:
 
     Parameters
     ----------
-    rig, task : Rig, Task
+    wanted : Wanted
         What was asked.
     candidates : list of Candidate
         Solved runs, the best first.
     unsolved : list of Candidate
         Runs that did not solve, in the order in which they were made.
-    scouts : list of Candidate
-        Relaxed solutions that are not settled yet.
+    scouts : list of (Candidate, Seed)
+        Relaxed solutions that are not settled yet, and where they came from.
     interrupted : bool
         Whether the user stopped the search.
     """
 
-    rig: Rig
-    task: Task
+    wanted: Wanted
     candidates: list[Candidate] = field(default_factory=list)
     unsolved: list[Candidate] = field(default_factory=list)
-    scouts: list[Candidate] = field(default_factory=list)
+    scouts: list[tuple[Candidate, Seed]] = field(default_factory=list)
     interrupted: bool = False
 
     @property
@@ -77,7 +75,7 @@ class Search:
     @property
     def iterations(self) -> int:
         """Iterations of all runs."""
-        everything = (*self.candidates, *self.unsolved, *self.scouts)
+        everything = (*self.candidates, *self.unsolved, *(scout for scout, _ in self.scouts))
         return sum(candidate.iterations for candidate in everything)
 
     @property
@@ -94,7 +92,8 @@ class Search:
         return sum(self._agrees(c) for c in self.candidates)
 
     def _agrees(self, candidate: Candidate) -> bool:
-        return abs(gain(measure(self.task), candidate.value, self.candidates[0].value)) < AGREEMENT
+        best = self.candidates[0].value
+        return abs(gain(self.wanted.measure, candidate.value, best)) < AGREEMENT
 
     def add(self, candidate: Candidate) -> None:
         """Take in the outcome of a run."""
@@ -102,7 +101,7 @@ class Search:
             self.interrupted = True
         if candidate.solved:
             self.candidates.append(candidate)
-            more = measure(self.task).more_is_better
+            more = self.wanted.measure.more_is_better
             self.candidates.sort(key=lambda c: -c.value if more else c.value)
         else:
             self.unsolved.append(candidate)
@@ -112,7 +111,7 @@ class Search:
         """Whether the best optimum is confirmed, or the effort spent."""
         if self.interrupted or self.runs >= MOST_RUNS or self.iterations >= MOST_ITERATIONS:
             return True
-        enough = self.runs >= LEAST_RUNS[type(self.task)] and self.agreeing >= 2
+        enough = self.runs >= LEAST_RUNS[type(self.wanted.task)] and self.agreeing >= 2
         return enough and not self._promising
 
     @property
@@ -120,8 +119,8 @@ class Search:
         """Whether a scout that is not settled yet claims more than the best optimum."""
         best = self.candidates[0].value
         return any(
-            _usable(scout) and gain(measure(self.task), scout.value, best) > PROMISE
-            for scout in self.scouts
+            _usable(scout) and gain(self.wanted.measure, scout.value, best) > PROMISE
+            for scout, _ in self.scouts
         )
 
     def best_effort(self) -> Candidate | None:
@@ -131,16 +130,17 @@ class Search:
         return self.unsolved[-1] if self.unsolved else None
 
 
-def search(rig: Rig, task: Task, seeds: list[Seed], reporter: Reporter) -> Search:
+def search(wanted: Wanted, seeds: list[Seed], reporter: Reporter) -> Search:
     """Run seeds until the best optimum is confirmed or the effort spent.
 
     Ctrl-C ends the search; what was found by then is kept.
     """
-    found = Search(rig, task)
+    found = Search(wanted)
+    scouting = can_scout(wanted.rig, wanted.measure)
     try:
-        if can_rest(rig):
-            _scout(found, _distinct(task, seeds), reporter)
-        direct = [partial(take_direct, rig, task, seed) for seed in seeds]
+        if scouting:
+            _scout(found, _distinct(wanted.task, seeds), reporter)
+        direct = [partial(take_direct, wanted, seed) for seed in seeds]
         settled = [partial(_settle_scout, found, scout) for scout in list(found.scouts)]
         queue = [run for pair in zip_longest(settled, direct) for run in pair if run is not None]
         for number, run in enumerate(queue, 1):
@@ -148,7 +148,7 @@ def search(rig: Rig, task: Task, seeds: list[Seed], reporter: Reporter) -> Searc
                 break
             best = found.candidates[0].value if found.candidates else None
             found.add(run(reporter.monitor(f"run {number}", best)))
-        if can_rest(rig) and found.spread > WIDE and not found.interrupted:
+        if scouting and found.spread > WIDE and not found.interrupted:
             _look_again(found, reporter)
     except KeyboardInterrupt:
         found.interrupted = True
@@ -166,13 +166,13 @@ def _scout(found: Search, seeds: list[Seed], reporter: Reporter) -> None:
     """Solve each seed with relaxed stops; the most promising first."""
     for number, seed in enumerate(seeds, 1):
         monitor = reporter.monitor(f"scout {number} of {len(seeds)}")
-        scout = relax(found.rig, found.task, seed, monitor)
+        scout = relax(found.wanted, seed, monitor)
         if scout.outcome.status is Status.INTERRUPTED:
             found.add(scout)
             return
-        found.scouts.append(scout)
-    sign = -1.0 if measure(found.task).more_is_better else 1.0
-    found.scouts.sort(key=lambda scout: (not _usable(scout), sign * scout.value))
+        found.scouts.append((scout, seed))
+    sign = -1.0 if found.wanted.measure.more_is_better else 1.0
+    found.scouts.sort(key=lambda pair: (not _usable(pair[0]), sign * pair[0].value))
 
 
 def _look_again(found: Search, reporter: Reporter) -> None:
@@ -186,9 +186,9 @@ def _look_again(found: Search, reporter: Reporter) -> None:
         ends = [float(marks[k]) for k in candidate.program.mesh.edges[1:]]
         chain = candidate.program.problem.chain
         seed = Seed(Guess.from_trajectory(candidate.trajectory), chain, ends)
-        scout = relax(found.rig, found.task, seed, monitor, finer=FINER)
+        scout = relax(found.wanted, seed, monitor, finer=FINER)
         if scout.outcome.status is not Status.INTERRUPTED:
-            scout = settle_relaxed(found.task, scout, monitor)
+            scout = settle_relaxed(found.wanted, scout, seed, monitor)
         found.add(scout)
         if found.interrupted:
             return
@@ -199,6 +199,8 @@ def _usable(scout: Candidate) -> bool:
     return scout.solved or scout.outcome.status is Status.LIMIT_REACHED
 
 
-def _settle_scout(found: Search, scout: Candidate, monitor: Monitor | None) -> Candidate:
-    found.scouts.remove(scout)
-    return settle_relaxed(found.task, scout, monitor)
+def _settle_scout(
+    found: Search, scouted: tuple[Candidate, Seed], monitor: Monitor | None
+) -> Candidate:
+    found.scouts.remove(scouted)
+    return settle_relaxed(found.wanted, *scouted, monitor)

@@ -6,6 +6,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterable
 from dataclasses import dataclass, replace
+from functools import partial
 
 import numpy as np
 
@@ -14,13 +15,14 @@ from rotorpump.laws.lead import LeadRun
 from rotorpump.laws.practical import rehearse
 from rotorpump.laws.trials import Trial
 from rotorpump.rig.rig import Rig
+from rotorpump.rig.slide import Slide
 from rotorpump.solution.trajectory import Trajectory
 from rotorpump.tasks import Rotate, SpinUp, Task
 from rotorpump.transcription.arcs import Arc, Chain, cut_into_arcs, signature
 from rotorpump.transcription.guess import Guess
 
-STRONGER = (2.0, 4.0)
-"""Factors on force and speed with which the law makes a spin-up in fewer swings."""
+STRONGER, WEAKER = (2.0, 4.0), (0.7, 0.5, 0.35)
+"""Factors on force and speed with which the law makes a spin-up in fewer swings, or in more."""
 
 PER_SIGNATURE = 3
 """Starting motions kept for each sequence of events."""
@@ -50,18 +52,18 @@ class Seed:
         return signature(self.chain)
 
 
-def guess_of(run: LeadRun) -> Guess:
+def guess_of(rig: Rig, run: LeadRun) -> Guess:
     """Return a run of the practical law as a guess."""
-    return Guess(run.time, *run.states)
+    return Guess.from_states(rig, run.time, run.states)
 
 
-def seeds_from(task: Task, trials: Iterable[Trial]) -> list[Seed]:
+def seeds_from(rig: Rig, task: Task, trials: Iterable[Trial]) -> list[Seed]:
     """Cut the trials into seeds: the best of each sequence of events first, then the seconds."""
     groups: dict[str, list[Seed]] = {}
     for trial in trials:
         if not trial.reached or trial.run.forces.size < 2:
             continue
-        seed = seed_of(task, guess_of(trial.run))
+        seed = seed_of(task, guess_of(rig, trial.run))
         group = groups.setdefault(seed.word, [])
         if len(group) < PER_SIGNATURE:
             group.append(seed)
@@ -76,7 +78,7 @@ def seeds_from(task: Task, trials: Iterable[Trial]) -> list[Seed]:
 def seed_of(task: Task, guess: Guess) -> Seed:
     """Cut one motion into arcs, as the task wants them."""
     if isinstance(task, Rotate):
-        return _turn(guess)
+        return _turn(guess, task.mean_speed)
     final = None
     if isinstance(task, SpinUp) and task.full_turn:
         final = math.copysign(math.pi, float(guess.angle[-1]))
@@ -84,19 +86,14 @@ def seed_of(task: Task, guess: Guess) -> Seed:
     return Seed(guess, chain, ends)
 
 
-def seed_from(task: Task, guess: object) -> Seed:
+def seed_from(task: Task, motion: Trajectory) -> Seed:
     """Cut a motion that the user gives into arcs.
 
     Raises
     ------
     InputError
-        If it is no motion, or does not suit the task.
+        If it does not suit the task.
     """
-    motion = guess if isinstance(guess, Trajectory) else getattr(guess, "trajectory", None)
-    if not isinstance(motion, Trajectory):
-        raise InputError("guess", "must be a Trajectory, or have one", type(guess).__name__)
-    if not motion.duration > 0.0:
-        raise InputError("guess", "must take some time", motion.duration)
     sampled = Guess.from_trajectory(motion)
     if isinstance(task, Rotate):
         turned = np.diff(sampled.angle)
@@ -105,28 +102,34 @@ def seed_from(task: Task, guess: object) -> Seed:
     return seed_of(task, sampled)
 
 
-def _turn(guess: Guess) -> Seed:
-    """Take one turn of a rotation, from a lowest point to the next."""
+def _turn(guess: Guess, mean_speed: float | None) -> Seed:
+    """Take one turn of a rotation, from a lowest point to the next, at the speed that is wanted."""
     full = 2.0 * math.pi
     whole = full * math.ceil(float(guess.angle[0]) / full - 1e-9)
-    start = float(np.interp(whole, guess.angle, guess.time))
-    shifted = Guess(
-        guess.time - start,
-        guess.angle - whole,
-        guess.momentum,
-        guess.radial,
-        guess.radial_speed,
+    start, end = np.interp([whole, whole + full], guess.angle, guess.time).tolist()
+    slower = 1.0 if mean_speed is None else full / mean_speed / (end - start)
+    shifted = replace(
+        guess,
+        time=(guess.time - start) * slower,
+        angle=guess.angle - whole,
+        momentum=guess.momentum / slower,
+        speed=guess.speed / slower,
+        radial_speed=guess.radial_speed / slower,
+        tangential_speed=guess.tangential_speed / slower,
     )
     ends = [math.pi, full]
     return Seed(shifted, tuple(Arc(1, "angle", end) for end in ends), ends)
 
 
-def rehearse_stronger(rig: Rig, task: SpinUp) -> list[Trial]:
-    """Run the law on stronger drives: motions that reach the goal in fewer swings."""
+def rehearse_with_other_drives(rig: Rig, task: SpinUp, factors: Iterable[float]) -> list[Trial]:
+    """Run the law on stronger or weaker drives: motions that take fewer or more swings."""
     trials: list[Trial] = []
-    for factor in STRONGER:
-        slide = replace(
-            rig.radial, force=rig.radial.force * factor, speed=rig.radial.speed * factor
-        )
-        trials += rehearse(replace(rig, radial=slide), task, rounds=0, coarse=True)[:3]
+    for factor in factors:
+        other = rig.with_slides(partial(_scaled, factor))
+        trials += rehearse(other, task, rounds=0, coarse=True)[:3]
     return trials
+
+
+def _scaled(factor: float, slide: Slide) -> Slide:
+    """Return a slide whose drive is stronger and faster by a factor."""
+    return replace(slide, force=slide.force * factor, speed=slide.speed * factor)

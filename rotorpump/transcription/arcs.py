@@ -87,19 +87,19 @@ def cut_into_arcs(guess: Guess, *, final_angle: float | None = None) -> tuple[Ch
 
 
 def _first_direction(guess: Guess) -> int:
-    moving = np.flatnonzero(guess.momentum)
-    return int(np.sign(guess.momentum[moving[0]])) if moving.size else 1
+    moving = np.flatnonzero(guess.speed)
+    return int(np.sign(guess.speed[moving[0]])) if moving.size else 1
 
 
 def _events(guess: Guess) -> list[tuple[float, float]]:
     """List times of standstills (angle not a number) and of passages through multiples of π."""
     events: list[tuple[float, float]] = []
-    time, angle, momentum = guess.time, guess.angle, guess.momentum
+    time, angle, speed = guess.time, guess.angle, guess.speed
     flips = np.flatnonzero(
-        (momentum[:-1] * momentum[1:] < 0.0) | ((momentum[1:] == 0.0) & (momentum[:-1] != 0.0))
+        (speed[:-1] * speed[1:] < 0.0) | ((speed[1:] == 0.0) & (speed[:-1] != 0.0))
     )
     for k in flips:
-        share = momentum[k] / (momentum[k] - momentum[k + 1])
+        share = speed[k] / (speed[k] - speed[k + 1])
         events.append((float(time[k] + share * (time[k + 1] - time[k])), math.nan))
     level = angle / math.pi
     # A start that lies on a multiple of π is left, not passed.

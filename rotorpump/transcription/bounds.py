@@ -1,5 +1,5 @@
 # SPDX-License-Identifier: BSD-3-Clause
-"""Bounds of the program's variables and rows."""
+"""Bounds of the program's variables."""
 
 from __future__ import annotations
 
@@ -10,14 +10,12 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from rotorpump.transcription.layout import Layout
-from rotorpump.transcription.mesh import FREE, OUTER, Mesh
-from rotorpump.transcription.problem import Problem
+from rotorpump.transcription.mesh import FREE, HIGH, Mesh
+from rotorpump.transcription.path import INSTANT, RATE_LIMITED
+from rotorpump.transcription.problem import Problem, Start
 from rotorpump.transcription.scaling import Scales
 
 Array = NDArray[np.float64]
-
-SHORTEST = 1e-4
-"""Least length of an interval, in time scales or radians."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -37,6 +35,11 @@ class Bounds:
         self.lower[places] = lower
         self.upper[places] = upper
 
+    def narrow(self, places: Any, lower: ArrayLike, upper: ArrayLike) -> None:
+        """Tighten the bounds at ``places``, no two of which are the same."""
+        self.lower[places] = np.maximum(self.lower[places], lower)
+        self.upper[places] = np.minimum(self.upper[places], upper)
+
     def clip(self, values: Array) -> Array:
         """Move values into the bounds."""
         return np.clip(values, self.lower, self.upper)
@@ -51,101 +54,88 @@ def bound_variables(
 ) -> Bounds:
     """Bounds of the scaled variables."""
     bounds = Bounds.free(layout.variables)
-    node, rung = layout.node, problem.form.rung
-    bounds.limit(node[:, 0], 0.0, np.inf)
-    _bound_slide(bounds, problem, layout, scales)
-    _, momentum = layout.collocated(problem.form)
-    forward = directions[:, None] > 0
-    bounds.limit(momentum, np.where(forward, 0.0, -np.inf), np.where(forward, np.inf, 0.0))
+    form = problem.form
+    time, angle = layout.nodes("time"), layout.nodes("angle")
+    bounds.limit(time, 0.0, np.inf)
+    for k in range(len(form.axes)):
+        _bound_slide(bounds, problem, layout, scales, k)
+    if form.centred:
+        _, momentum = layout.collocated
+        forward = directions[:, None] > 0
+        bounds.limit(momentum, np.where(forward, 0.0, -np.inf), np.where(forward, np.inf, 0.0))
     for arc, k in zip(problem.chain, mesh.edges[1:], strict=True):
-        if arc.end == "standstill":
-            bounds.limit(node[k, 2], 0.0, 0.0)
+        if arc.end == "standstill" and form.centred:
+            bounds.limit(layout.nodes("momentum")[k], 0.0, 0.0)
         elif arc.end == "angle":
-            bounds.limit(node[k, 1], arc.angle, arc.angle)
-    bounds.limit(node[0, 0], 0.0, 0.0)
-    start = problem.start
-    if start is None:
-        bounds.limit(node[0, 1], 0.0, 0.0)
+            bounds.limit(angle[k], arc.angle, arc.angle)
+    bounds.limit(time[0], 0.0, 0.0)
+    for name in form.sums:
+        bounds.limit(layout.nodes(name)[0], 0.0, 0.0)
+    bounds.limit(layout.slacks, 0.0, np.inf)
+    if problem.start is None:
+        bounds.limit(angle[0], 0.0, 0.0)
     else:
-        bounds.limit(node[0, 1], start.angle, start.angle)
-        momentum_start = start.momentum / scales.momentum
-        bounds.limit(node[0, 2], momentum_start, momentum_start)
-        for order, value in enumerate((start.radial, start.radial_speed)[:rung]):
-            scaled = scales.scale_slide(order, value)
-            bounds.limit(node[0, 3 + order], scaled, scaled)
+        _bound_start(bounds, problem.start, layout, scales)
     if problem.horizon is not None:
         last = problem.horizon / scales.time
-        bounds.limit(node[-1, 0], last, last)
-    _bound_rests(bounds, mesh, layout)
+        bounds.limit(time[-1], last, last)
+    elif problem.deadline is not None:
+        bounds.limit(time[-1], 0.0, problem.deadline / scales.time)
+    for k, axis in enumerate(form.axes):
+        if axis.forceful:
+            _bound_pattern(bounds, mesh, layout, k)
     return bounds
 
 
-def _bound_slide(bounds: Bounds, problem: Problem, layout: Layout, scales: Scales) -> None:
-    """Stroke and speed limit, on what is a variable at the rung of the ladder."""
-    rung = problem.form.rung
-    limits = {0: (0.0, 1.0), 1: (-1.0, 1.0), 2: (-np.inf, np.inf)}
-    top = problem.rig.radial.speed / scales.speed
-    limits[1] = (-top, top)
-    for order in range(rung):
-        bounds.limit(layout.node[:, 3 + order], *limits[order])
-    bounds.limit(layout.controls, *limits[rung])
+def _bound_start(bounds: Bounds, start: Start, layout: Layout, scales: Scales) -> None:
+    """Fix the state at the beginning; the slides are at rest."""
+    bounds.limit(layout.nodes("angle")[0], start.angle, start.angle)
+    momentum = start.momentum / scales.momentum
+    bounds.limit(layout.nodes("momentum")[0], momentum, momentum)
+    for axis in layout.form.axes:
+        if axis.rung == INSTANT:
+            continue
+        place = scales.slide(axis.name).scaled(0, getattr(start, axis.name))
+        bounds.limit(layout.nodes(axis.name)[0], place, place)
+        for name in axis.node[1:3]:
+            bounds.limit(layout.nodes(name)[0], 0.0, 0.0)
 
 
-def _bound_rests(bounds: Bounds, mesh: Mesh, layout: Layout) -> None:
-    """Hold the mass on its stop throughout resting intervals."""
-    resting = np.flatnonzero(mesh.rests != FREE)
-    if resting.size == 0:
-        return
-    seat = np.where(mesh.rests[resting] == OUTER, 1.0, 0.0)
-    for side in (resting, resting + 1):
-        bounds.limit(layout.node[side, 3], seat, seat)
-        bounds.limit(layout.node[side, 4], 0.0, 0.0)
-    bounds.limit(layout.controls[resting], 0.0, 0.0)
-
-
-def bound_rows(problem: Problem, mesh: Mesh, scales: Scales) -> Bounds:
-    """Bounds of the rows, in the order of the program's blocks."""
-    rows = problem.form.rows
-    intervals = Bounds.free(mesh.intervals, sum(rows.values()))
-    top = problem.rig.radial.speed / scales.speed
-    force = (-np.inf, 0.0) if problem.form.relaxed else (-1.0, 1.0)
-    limits = {
-        "wheel": (0.0, 0.0),
-        "path": (0.0, 0.0),
-        "stroke": (0.0, 1.0),
-        "arrival": (-np.inf, 0.0),
-        "speed": (-top, top),
-        "force": force,
-    }
-    resting = np.flatnonzero(mesh.rests != FREE)
-    outside = mesh.rests[resting] == OUTER
-    first = 0
-    for name, count in rows.items():
-        group = slice(first, first + count)
-        intervals.limit((slice(None), group), *limits[name])
-        if name == "force":
-            # A stop bears whatever presses on it, and nothing else.
-            intervals.lower[resting[outside], group] = -np.inf
-            intervals.upper[resting[~outside], group] = np.inf
-        elif name != "wheel":
-            # The slide's motion is fixed by bounds: rows on it would be redundant.
-            intervals.limit((resting, group), -np.inf, np.inf)
-        first += count
-    lengths = Bounds.free(mesh.intervals, 2)
-    if mesh.flexible:
-        lengths.limit((slice(None), 0), 0.0, np.inf)
-        lengths.limit((slice(None), 1), -np.inf, 0.0)
+def _bound_slide(
+    bounds: Bounds, problem: Problem, layout: Layout, scales: Scales, number: int
+) -> None:
+    """Stroke, speed and force limit, on what is a variable at the rung of the ladder."""
+    axis = problem.form.axes[number]
+    slide, sizes = problem.rig.slide(axis.name), scales.slide(axis.name)
+    top = slide.speed / sizes.speed
+    limits = {0: (0.0, 1.0), 1: (-top, top), 2: (-np.inf, np.inf)}
+    for order, name in enumerate(axis.node[:3]):
+        bounds.limit(layout.nodes(name), *limits[order])
+    if axis.rung == RATE_LIMITED:
+        most = slide.standing_force / sizes.force
+        bounds.limit(layout.nodes(axis.node[3]), -most, most)
     else:
-        lengths.limit((slice(None), 0), 0.0, 0.0)
-        lengths.limit((slice(None), 1), SHORTEST, np.inf)
-        # The lengths of an arc sum to the arc: its last one follows from the others.
-        lengths.limit((mesh.edges[1:] - 1, 0), -np.inf, np.inf)
-    lower = [intervals.lower.ravel(), lengths.lower.ravel()]
-    upper = [intervals.upper.ravel(), lengths.upper.ravel()]
-    if problem.keeps_margin:
-        lower.append(np.array([0.0]))
-        upper.append(np.array([1.0]))
-    if problem.goal is not None:
-        lower.append(np.array([problem.goal.least]))
-        upper.append(np.array([np.inf]))
-    return Bounds(np.concatenate(lower), np.concatenate(upper))
+        bounds.limit(layout.controls(number), *limits[axis.rung])
+
+
+def _bound_pattern(bounds: Bounds, mesh: Mesh, layout: Layout, number: int) -> None:
+    """Hold the mass on its stop in resting intervals, and to its direction where it rubs."""
+    axis = layout.form.axes[number]
+    place, pace = layout.nodes(axis.name), layout.nodes(f"{axis.name}_speed")
+    resting = np.flatnonzero(mesh.rests[number] != FREE)
+    seat = np.where(mesh.rests[number, resting] == HIGH, 1.0, 0.0)
+    for side in (resting, resting + 1):
+        bounds.limit(place[side], seat, seat)
+        bounds.limit(pace[side], 0.0, 0.0)
+        if axis.rung == RATE_LIMITED:
+            bounds.limit(layout.nodes(axis.node[2])[side], 0.0, 0.0)
+    bounds.limit(layout.controls(number)[resting], 0.0, 0.0)
+    if axis.rubs and not layout.form.relaxed:
+        for end in (0, 1):
+            moving = np.flatnonzero(mesh.rests[number] == FREE)
+            forward = mesh.signs[number, moving] > 0
+            bounds.narrow(
+                pace[moving + end],
+                np.where(forward, 0.0, -np.inf),
+                np.where(forward, np.inf, 0.0),
+            )

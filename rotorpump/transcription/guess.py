@@ -3,11 +3,15 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 
 import numpy as np
 from numpy.typing import NDArray
 
+from rotorpump.physics.constants import Constants
+from rotorpump.physics.equations import wheel_speed
+from rotorpump.physics.state import Slides
+from rotorpump.rig.rig import Rig
 from rotorpump.solution.trajectory import Trajectory
 
 Array = NDArray[np.float64]
@@ -19,31 +23,38 @@ class Guess:
 
     Parameters
     ----------
-    time, angle, momentum, radial, radial_speed : ndarray, shape (n,)
-        Time from zero, increasing [s], angle [rad], angular momentum [kg m2/s], position [m] and
-        speed [m/s] of the mass.
+    time, angle, momentum, speed : ndarray, shape (n,)
+        Time from zero, increasing [s], wheel angle [rad], angular momentum [kg m2/s] and wheel
+        speed [rad/s].
+    radial, radial_speed, tangential, tangential_speed : ndarray, shape (n,)
+        Position [m] and speed [m/s] of the mass along both axes.
     """
 
     time: Array
     angle: Array
     momentum: Array
+    speed: Array
     radial: Array
     radial_speed: Array
+    tangential: Array
+    tangential_speed: Array
 
     @classmethod
-    def from_trajectory(cls, trajectory: Trajectory, *, points: int = 8) -> Guess:
+    def from_states(cls, rig: Rig, time: Array, states: Array) -> Guess:
+        """Take samples of angle, momentum, and place and speed of the mass, shape (6, n)."""
+        angle, momentum, *slides = states
+        speed = wheel_speed(Constants.of(rig), momentum, Slides(*slides))
+        return cls(time, angle, momentum, np.asarray(speed), *slides)
+
+    @classmethod
+    def from_trajectory(cls, trajectory: Trajectory, *, points: int = 4) -> Guess:
         """Sample a trajectory densely, ``points`` times between neighbouring nodes."""
         nodes = np.unique(trajectory.time)
         shares = np.arange(points) / points
         times = np.append((nodes[:-1, None] + shares * np.diff(nodes)[:, None]).ravel(), nodes[-1])
         dense = trajectory.at(times)
-        return cls(
-            dense.time - dense.time[0],
-            dense.angle,
-            dense.momentum,
-            dense.radial,
-            dense.radial_speed,
-        )
+        columns = (getattr(dense, field.name) for field in fields(cls)[1:])
+        return cls(dense.time - dense.time[0], *columns)
 
     def at(self, name: str, time: Array) -> Array:
         """Interpolate the quantity called ``name``."""
@@ -53,5 +64,5 @@ class Guess:
         """Return the motion between two times, its time counted from the first."""
         inside = self.time[(self.time > start) & (self.time < end)]
         times = np.concatenate(([start], inside, [end]))
-        columns = (self.at(n, times) for n in ("angle", "momentum", "radial", "radial_speed"))
+        columns = (self.at(field.name, times) for field in fields(self)[1:])
         return Guess(times - start, *columns)

@@ -3,84 +3,26 @@
 
 Time form: time is the independent variable, angle and momentum are collocated.
 Angle form: the angle is, momentum and time are collocated (dt/dφ = 1/ω).
-In both the slide's motion is an exact polynomial of the elapsed time (`SlidePath`), so that only
+In both the slides' motion is an exact polynomial of the elapsed time (`SlidePath`), so that only
 the wheel's equations are collocated. Every variable is scaled to order one.
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
 from functools import cache
 from typing import Any
 
 import casadi
 
-from rotorpump.physics.constants import Constants
-from rotorpump.physics.equations import contact_force, momentum_rate, wheel_speed
+from rotorpump.physics.equations import motion_along, wheel_speed
 from rotorpump.transcription.blocks import Kernel
+from rotorpump.transcription.form import TIME, AxisForm, Form
+from rotorpump.transcription.instant import Instant
+from rotorpump.transcription.limits import Rest, limit_rows
 from rotorpump.transcription.nodes import radau_nodes
-from rotorpump.transcription.path import FORCE_LIMITED, INSTANT, SPEED_LIMITED, SlidePath
-from rotorpump.transcription.scaling import Scales
-
-TIME, ANGLE = "time", "angle"
-WHEEL = 3
-"""Time, angle and momentum lead every node; the slide's continuous values follow."""
-
-SHARED = len(Constants._fields) + len(Scales._fields) + 2
-"""Shared parameters of every kernel: constants, scales, force limit, relaxation."""
-
-
-@dataclass(frozen=True)
-class Form:
-    """Structure of an interval: all that changes its functions rather than their parameters.
-
-    Parameters
-    ----------
-    independent : {"time", "angle"}
-        The independent variable.
-    rung : int
-        Rung of the radial slide's ladder.
-    degree : int
-        Number of Radau points.
-    relaxed : bool
-        Whether the end stops bear load by a relaxed complementarity everywhere, rather than only
-        in intervals known to rest on a stop.
-    """
-
-    independent: str
-    rung: int
-    degree: int = 3
-    relaxed: bool = False
-
-    @property
-    def node(self) -> int:
-        """Variables of a node."""
-        return WHEEL + self.rung
-
-    @property
-    def inner(self) -> int:
-        """Variables inside an interval: two for each inner point, two controls."""
-        return 2 * (self.degree - 1) + 2
-
-    @property
-    def rows(self) -> dict[str, int]:
-        """Number of rows by group, in their order."""
-        force = self.rung == FORCE_LIMITED
-        return {
-            "wheel": 2 * self.degree,
-            "path": max(self.rung, 1),
-            "stroke": self.rung,
-            "arrival": 2 if self.relaxed else 0,
-            "speed": 1 if force else 0,
-            "force": (2 * self.degree if self.relaxed else self.degree + 1) if force else 0,
-        }
-
-
-def split_shared(shared: Any) -> tuple[Constants, Scales, Any, Any]:
-    """Name the shared parameters: constants, scales, force limit, relaxation."""
-    parts = casadi.vertsplit(shared)
-    first = len(Constants._fields)
-    return Constants(*parts[:first]), Scales(*parts[first:-2]), parts[-2], parts[-1]
+from rotorpump.transcription.path import INSTANT, RATE_LIMITED, SlidePath
+from rotorpump.transcription.shared import SHARED, Shared
+from rotorpump.transcription.sums import sum_rows
 
 
 @cache
@@ -88,78 +30,139 @@ def interval_kernel(form: Form) -> Kernel:
     """Rows of one interval with their derivatives.
 
     The variables are those of the first node, of the second node, and the inner ones: the two
-    collocated quantities at each inner point, then the control at both ends. The own parameter is
-    the direction of rotation.
+    collocated quantities at each inner point, the control of each slide at both ends, and the
+    positive parts of the drives' powers. The own parameters are the direction of rotation and, for
+    each slide, the stop on which it rests and the direction in which it moves.
     """
-    z = casadi.SX.sym("z", 2 * form.node + form.inner)
-    own = casadi.SX.sym("q", 1)
-    shared = casadi.SX.sym("p", SHARED)
-    c, s, force_limit, relaxation = split_shared(shared)
+    width = len(form.node)
+    z = casadi.SX.sym("z", 2 * width + form.inner)
+    own = casadi.SX.sym("q", form.own)
+    symbols = casadi.SX.sym("p", SHARED)
+    shared = Shared.of(form, symbols)
     variables = casadi.vertsplit(z)
-    left, right = variables[: form.node], variables[form.node : 2 * form.node]
-    inner = variables[2 * form.node :]
-    path = SlidePath(
-        tuple(s.slide_value(k, v) for k, v in enumerate(left[WHEEL:])),
-        s.slide_value(form.rung, inner[-2]),
-        s.slide_value(form.rung, inner[-1]),
-        (right[0] - left[0]) * s.time,
-    )
-    points = _Points(form, left, right, inner, path.duration, s)
+    left = dict(zip(form.node, variables[:width], strict=True))
+    right = dict(zip(form.node, variables[width : 2 * width], strict=True))
+    inner = variables[2 * width :]
+    parameters = casadi.vertsplit(own)
 
-    wheel, arrival, force = [], [], []
-    for j in range(form.degree + 1):
-        elapsed = points.elapsed[j]
-        radial = path.position(elapsed)
-        speed = wheel_speed(c, points.momentum[j] * s.momentum, radial)
-        if j:
-            rate = momentum_rate(casadi, c, points.angle[j], speed, radial, own)
-            wheel += points.defects(j, speed, rate)
-        if j == form.degree and form.relaxed:
-            # What the drive alone can brake: it forbids a stop to stop or to throw the mass.
-            pace = path.speed(elapsed) ** 2 / 2.0
-            strength = force_limit / c.mass + c.gravity
-            arrival.append((pace / strength + radial - c.outer) / s.length)
-            arrival.append((pace / (strength + radial * speed**2) + c.inner - radial) / s.length)
-        # A jump of the force at an interval's start is the next interval's business; a relaxed
-        # solve, which only has to find the pattern, does without that point.
-        if form.rung == FORCE_LIMITED and (j or not form.relaxed):
-            acceleration = path.acceleration(elapsed)
-            contact = contact_force(casadi, c, points.angle[j], speed, radial, acceleration)
-            force += _force_rows(form, contact / force_limit, radial, c, s, relaxation)
-    joins = [
-        (s.slide_value(k, v) - end) / s.slide(k)
-        for k, (v, end) in enumerate(zip(right[WHEEL:], path.end(), strict=True))
+    duration = (right["time"] - left["time"]) * shared.scales.time
+    paths = {
+        axis.name: _path(form, shared, axis, left, right, inner[form.control(k)], duration)
+        for k, axis in enumerate(form.axes)
+    }
+    points = _Points(form, left, right, inner, duration, shared)
+    instants = [
+        _instant(form, shared, points, j, paths, parameters[0]) for j in range(form.degree + 1)
     ]
-    if form.rung == INSTANT:
-        # A mass that may jump stays where it is in between, so that no speed is hidden there.
-        joins = [inner[-1] - inner[-2]]
-    groups = {"wheel": wheel, "path": joins, "arrival": arrival, "force": force}
-    groups["stroke"], groups["speed"] = _between_nodes(form, path, right, c, s)
+    groups: dict[str, list[Any]] = {
+        "wheel": [row for j in range(1, form.degree + 1) for row in points.defects(j, instants[j])],
+        "turning": [parameters[0] * now.speed * shared.scales.time for now in instants],
+    }
+    groups["turning"] = groups["turning"][-form.rows["turning"] or None :]
+    used = {}
+    for k, axis in enumerate(form.axes):
+        path, rest = paths[axis.name], Rest(*parameters[1 + 2 * k : 3 + 2 * k])
+        ends = (left, right)
+        limits, used[axis.name] = limit_rows(form, axis, shared, path, instants, ends, rest)
+        groups |= {f"{axis.name} {name}": group for name, group in limits.items()}
+        groups[f"{axis.name} path"] = _joins(axis, shared, path, right)
+    slacks = inner[form.inner - form.slacks :]
+    groups |= sum_rows(form, shared, instants, used, slacks, (left, right))
     rows = [row for name, count in form.rows.items() if count for row in groups[name]]
-    return Kernel.build(z, own, shared, casadi.vertcat(*rows))
+    return Kernel.build(z, own, symbols, casadi.vertcat(*rows))
+
+
+def _path(
+    form: Form,
+    shared: Shared,
+    axis: AxisForm,
+    left: dict[str, Any],
+    right: dict[str, Any],
+    controls: list[Any],
+    duration: Any,
+) -> SlidePath:
+    """Motion of one slide from its scaled variables."""
+    scales = shared.scales.slide(axis.name)
+    rated = axis.rung == RATE_LIMITED
+    continuous = axis.node[:2] if rated else axis.node
+    start = tuple(scales.value(k, left[name]) for k, name in enumerate(continuous))
+    if rated:
+        controls = [end[f"{axis.name}_acceleration"] for end in (left, right)]
+    first, last = (scales.value(len(continuous), control) for control in controls)
+    return SlidePath(start, first, last, duration)
+
+
+def _joins(axis: AxisForm, shared: Shared, path: SlidePath, right: dict[str, Any]) -> list[Any]:
+    """Rows that make the next node continue the slide's motion."""
+    scales = shared.scales.slide(axis.name)
+    if axis.rung == INSTANT:
+        # a mass that may jump stays where it is in between, so that no speed is hidden there
+        return [(path.last - path.first) / scales.length]
+    return [
+        (scales.value(k, right[name]) - end) / scales.of_order(k)
+        for k, (name, end) in enumerate(zip(axis.node, path.end(), strict=False))
+    ]
+
+
+def _instant(
+    form: Form,
+    shared: Shared,
+    points: _Points,
+    j: int,
+    paths: dict[str, SlidePath],
+    direction: Any,
+) -> Instant:
+    """Everything about collocation point j."""
+    elapsed = points.elapsed[j]
+    slides = shared.slides(
+        {name: path.position(elapsed) for name, path in paths.items()},
+        {name: path.speed(elapsed) for name, path in paths.items()},
+    )
+    radial, tangential = (
+        paths[name].acceleration(elapsed) if name in paths else 0.0
+        for name in ("radial", "tangential")
+    )
+    speed = wheel_speed(shared.constants, points.momentum[j] * shared.scales.momentum, slides)
+    rate, motion = motion_along(
+        casadi, shared.constants, points.angle[j], speed, slides, radial, tangential, direction
+    )
+    passing = points.passing(j, speed)
+    return Instant(points.angle[j], speed, rate, slides, motion, elapsed, passing)
 
 
 class _Points:
     """Angle, momentum and elapsed time at the start and the collocation points of an interval."""
 
     def __init__(
-        self, form: Form, left: Any, right: Any, inner: Any, duration: Any, scales: Scales
+        self,
+        form: Form,
+        left: dict[str, Any],
+        right: dict[str, Any],
+        inner: list[Any],
+        duration: Any,
+        shared: Shared,
     ) -> None:
         nodes = radau_nodes(form.degree)
-        self._form, self._scales, self._slopes = form, scales, nodes.slopes
-        which = 1 if form.independent == TIME else 0
-        last = 2 * (form.degree - 1)
-        self._collocated = [left[which], *inner[0:last:2], right[which]]
-        self._span = right[1 - which] - left[1 - which]
-        self.momentum = [left[2], *inner[1:last:2], right[2]]
+        self._form, self._scales, self._slopes = form, shared.scales, nodes.slopes
+        collocated, other = ("angle", "time") if form.independent == TIME else ("time", "angle")
+        last = form.collocated
+        self._collocated = [left[collocated], *inner[0:last:2], right[collocated]]
+        self._span = right[other] - left[other]
+        self.momentum = [left["momentum"], *inner[1:last:2], right["momentum"]]
         if form.independent == TIME:
             self.angle = self._collocated
             self.elapsed = [duration * float(point) for point in nodes.points]
         else:
-            self.angle = [left[1] + self._span * float(point) for point in nodes.points]
-            self.elapsed = [(time - left[0]) * scales.time for time in self._collocated]
+            self.angle = [left["angle"] + self._span * float(point) for point in nodes.points]
+            self.elapsed = [(time - left["time"]) * shared.scales.time for time in self._collocated]
 
-    def defects(self, j: int, speed: Any, rate: Any) -> list[Any]:
+    def passing(self, j: int, speed: Any) -> Any:
+        """Time that passes per unit of the interval at point j [s]."""
+        if self._form.independent == TIME:
+            return self._span * self._scales.time
+        return self._span / speed
+
+    def defects(self, j: int, now: Instant) -> list[Any]:
         """Rows that make the polynomials follow φ' = ω and H' = Ḣ at point j."""
         slopes = casadi.DM(self._slopes[j - 1])
         slope = casadi.dot(slopes, casadi.vertcat(*self._collocated))
@@ -168,42 +171,4 @@ class _Points:
             turned, passed = slope, self._span * self._scales.time
         else:
             turned, passed = self._span, slope * self._scales.time
-        return [turned - passed * speed, rise - passed * rate / self._scales.momentum]
-
-
-def _between_nodes(
-    form: Form, path: SlidePath, right: Any, c: Constants, s: Scales
-) -> tuple[list[Any], list[Any]]:
-    """Rows that hold stroke and speed limit everywhere within the interval.
-
-    Position and speed are polynomials; both stay within limits that their Bernstein coefficients
-    stay within. The end values are bounded as variables, the coefficients in between here.
-    """
-    if form.rung == FORCE_LIMITED:
-        first = path.start[0] + path.duration * path.start[1] / 3.0
-        last = (
-            s.slide_value(0, right[WHEEL])
-            - path.duration * s.slide_value(1, right[WHEEL + 1]) / 3.0
-        )
-        middle = path.start[1] + 0.5 * path.duration * path.first
-        stroke = [(first - c.inner) / s.length, (last - c.inner) / s.length]
-        return stroke, [middle / s.slide(SPEED_LIMITED)]
-    if form.rung == SPEED_LIMITED:
-        middle = path.start[0] + 0.5 * path.duration * path.first
-        return [(middle - c.inner) / s.length], []
-    return [], []
-
-
-def _force_rows(
-    form: Form, contact: Any, radial: Any, c: Constants, s: Scales, relaxation: Any
-) -> list[Any]:
-    """Rows that hold the drive within its limit; ``contact`` is in units of that limit.
-
-    What the contact force exceeds the limit by must be borne by an end stop; relaxed
-    complementarity keeps excess times gap below a small share of limit times stroke.
-    """
-    if not form.relaxed:
-        return [contact]
-    inward = (-contact - 1.0) * (c.outer - radial) / s.length
-    outward = (contact - 1.0) * (radial - c.inner) / s.length
-    return [inward - relaxation, outward - relaxation]
+        return [turned - passed * now.speed, rise - passed * now.rate / self._scales.momentum]

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from rotorpump.transcription.interval import TIME, Form
+from rotorpump.transcription.form import TIME, Form
 
 Indices = NDArray[np.intp]
 
@@ -19,6 +19,8 @@ class Layout:
 
     Parameters
     ----------
+    form : Form
+        Structure of the intervals.
     variables : int
         Length of the vector.
     node : ndarray of int, shape (intervals + 1, variables of a node)
@@ -28,6 +30,7 @@ class Layout:
         Places of each interval's inner variables.
     """
 
+    form: Form
     variables: int
     node: Indices
     inner: Indices
@@ -38,13 +41,14 @@ class Layout:
 
         The last node has its leading ``own_last`` variables (all by default) of its own.
         """
-        width = form.node + form.inner
+        size = len(form.node)
+        width = size + form.inner
         first = np.arange(intervals + 1)[:, None] * width
-        node = first + np.arange(form.node)
-        inner = first[:-1] + form.node + np.arange(form.inner)
-        last = form.node if own_last is None else own_last
+        node = first + np.arange(size)
+        inner = first[:-1] + size + np.arange(form.inner)
+        last = size if own_last is None else own_last
         node[-1, last:] = node[0, last:]
-        return cls(intervals * width + last, node, inner)
+        return cls(form, intervals * width + last, node, inner)
 
     @property
     def intervals(self) -> int:
@@ -56,12 +60,21 @@ class Layout:
         """Places that the interval kernel takes, shape (intervals, variables)."""
         return np.hstack([self.node[:-1], self.node[1:], self.inner])
 
-    @property
-    def controls(self) -> Indices:
-        """Places of the control at both ends of each interval, shape (intervals, 2)."""
-        return self.inner[:, -2:]
+    def nodes(self, name: str) -> Indices:
+        """Places of one quantity at all nodes, shape (intervals + 1,)."""
+        return np.asarray(self.node[:, self.form.index(name)])
 
-    def collocated(self, form: Form) -> tuple[Indices, Indices]:
+    def controls(self, axis: int) -> Indices:
+        """Places of a slide's control at both ends of each interval, shape (intervals, 2 or 0)."""
+        return np.asarray(self.inner[:, self.form.control(axis)])
+
+    @property
+    def slacks(self) -> Indices:
+        """Places of the positive parts of power, shape (intervals, degree times axes, or 0)."""
+        return np.asarray(self.inner[:, self.form.inner - self.form.slacks :])
+
+    @property
+    def collocated(self) -> tuple[Indices, Indices]:
         """Places of the two collocated quantities at all points of each interval.
 
         Returns
@@ -69,10 +82,11 @@ class Layout:
         first, momentum : ndarray of int, shape (intervals, degree + 1)
             Angle (time form) or time (angle form), and momentum.
         """
-        which = 1 if form.independent == TIME else 0
-        last = 2 * (form.degree - 1)
-        first = np.column_stack(
-            [self.node[:-1, which], self.inner[:, 0:last:2], self.node[1:, which]]
-        )
-        momentum = np.column_stack([self.node[:-1, 2], self.inner[:, 1:last:2], self.node[1:, 2]])
-        return first, momentum
+        leading = "angle" if self.form.independent == TIME else "time"
+        last = self.form.collocated
+
+        def points(name: str, offset: int) -> Indices:
+            nodes = self.nodes(name)
+            return np.column_stack([nodes[:-1], self.inner[:, offset:last:2], nodes[1:]])
+
+        return points(leading, 0), points("momentum", 1)

@@ -4,7 +4,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
@@ -12,8 +12,10 @@ from numpy.typing import NDArray
 
 Array = NDArray[np.float64]
 
-FREE, OUTER, INNER = 0, 1, -1
-"""The mass moves freely, or rests on the outer or the inner end stop."""
+FREE, HIGH, LOW = 0, 1, -1
+"""The mass moves freely along an axis, or rests on the high or the low end stop."""
+
+Marks = NDArray[np.intp]
 
 
 @dataclass(frozen=True, eq=False)
@@ -24,27 +26,31 @@ class Mesh:
     ----------
     shares : tuple of ndarray
         For each arc, the nominal length of each interval as a share of the arc; sums to one.
-    rests : ndarray of int, shape (intervals,)
-        FREE, OUTER or INNER for each interval.
+    rests : ndarray of int, shape (axes, intervals)
+        FREE, HIGH or LOW for each slide and interval.
+    signs : ndarray of int, shape (axes, intervals)
+        Direction in which each slide moves in each interval; it matters where the mass rubs.
     flexible : bool
         Whether interval lengths may depart from the nominal ones, so that the ends of intervals
         move to the switches.
     """
 
     shares: tuple[Array, ...]
-    rests: NDArray[np.intp]
+    rests: Marks
+    signs: Marks
     flexible: bool
 
     @classmethod
-    def uniform(cls, arcs: int, intervals: int, *, flexible: bool) -> Mesh:
+    def uniform(cls, arcs: int, intervals: int, axes: int, *, flexible: bool) -> Mesh:
         """Divide each arc into equal intervals, none of them resting."""
         share = np.full(intervals, 1.0 / intervals)
-        return cls((share,) * arcs, np.zeros(arcs * intervals, dtype=np.intp), flexible)
+        marks = np.zeros((axes, arcs * intervals), dtype=np.intp)
+        return cls((share,) * arcs, marks, marks, flexible)
 
     @property
     def intervals(self) -> int:
         """Number of intervals."""
-        return int(self.rests.size)
+        return int(self.rests.shape[1])
 
     @property
     def counts(self) -> tuple[int, ...]:
@@ -65,20 +71,21 @@ class Mesh:
         ]
         return np.append(np.concatenate(pieces), ends[-1])
 
-    def with_rests(self, rests: NDArray[np.intp], *, flexible: bool) -> Mesh:
-        """Return the same division with other resting intervals."""
-        return Mesh(self.shares, rests, flexible)
+    def with_pattern(self, rests: Marks, signs: Marks, *, flexible: bool) -> Mesh:
+        """Return the same division with other resting intervals and directions."""
+        return Mesh(self.shares, rests, signs, flexible)
 
     def settled(self, nodes: Array) -> Mesh:
         """Take the lengths that a solution found, between its ``nodes``, as the nominal ones."""
         lengths = np.diff(nodes)
         pieces = np.split(lengths, self.edges[1:-1])
-        return Mesh(tuple(p / p.sum() for p in pieces), self.rests, self.flexible)
+        return replace(self, shares=tuple(p / p.sum() for p in pieces))
 
-    def split(self, pieces: NDArray[np.intp]) -> Mesh:
+    def split(self, pieces: Marks) -> Mesh:
         """Divide each interval into so many equal pieces."""
         shares = [
             np.repeat(share / count, count)
             for share, count in zip(self.shares, np.split(pieces, self.edges[1:-1]), strict=True)
         ]
-        return Mesh(tuple(shares), np.repeat(self.rests, pieces), self.flexible)
+        rests, signs = (np.repeat(marks, pieces, axis=1) for marks in (self.rests, self.signs))
+        return Mesh(tuple(shares), rests, signs, self.flexible)

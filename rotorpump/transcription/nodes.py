@@ -3,7 +3,9 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -53,6 +55,18 @@ def radau_nodes(degree: int) -> Nodes:
         np.vander(points[1:], increasing=True).T, 1.0 / np.arange(1, degree + 1)
     )
     return Nodes(points, _slopes(points)[1:], weights)
+
+
+def lagrange_basis(nodes: Sequence[Any], place: Any) -> list[Any]:
+    """Values at ``place`` of the Lagrange polynomials on ``nodes``, numbers or symbols."""
+    basis = []
+    for j, own in enumerate(nodes):
+        value: Any = 1.0
+        for i, other in enumerate(nodes):
+            if i != j:
+                value = value * (place - other) / (own - other)
+        basis.append(value)
+    return basis
 
 
 def _slopes(points: Array) -> Array:

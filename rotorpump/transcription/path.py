@@ -1,10 +1,11 @@
 # SPDX-License-Identifier: BSD-3-Clause
-"""Motion of the slide within an interval, as a polynomial of the elapsed time.
+"""Motion of a slide within an interval, as a polynomial of the elapsed time.
 
-The ladder of drive limits decides what jumps from interval to interval: the acceleration when the
-force is limited, the speed when only the speed is, the position when neither is. What jumps is
-linear within an interval (a position that jumps is constant there), so that its limits hold
-everywhere once they hold at both ends.
+The ladder of drive limits decides what jumps from interval to interval: nothing but the rate of
+the acceleration when the force's rate is limited, the acceleration when the force is, the speed
+when only the speed is, the position when neither is. What jumps is linear within an interval (a
+position that jumps is constant there), so that its limits hold everywhere once they hold at both
+ends.
 """
 
 from __future__ import annotations
@@ -14,12 +15,17 @@ from typing import Any
 
 from rotorpump.rig.slide import Slide
 
-INSTANT, SPEED_LIMITED, FORCE_LIMITED = 0, 1, 2
+INSTANT, SPEED_LIMITED, FORCE_LIMITED, RATE_LIMITED = 0, 1, 2, 3
 
 
-def rung_of(slide: Slide) -> int:
-    """Rung of the ladder on which a slide stands: how often its control is integrated."""
-    if slide.force < float("inf"):
+def rung_of(slide: Slide, *, forced: bool) -> int:
+    """Rung of the ladder on which a slide stands: how often its control is integrated.
+
+    ``forced`` tells whether forces move the mass.
+    """
+    if slide.force_rate < float("inf"):
+        return RATE_LIMITED
+    if forced:
         return FORCE_LIMITED
     return SPEED_LIMITED if slide.speed < float("inf") else INSTANT
 
@@ -31,10 +37,10 @@ class SlidePath:
     Parameters
     ----------
     start : sequence
-        Values at the interval's start that are continuous with the one before: position and
-        speed, position alone, or nothing, by the rung.
+        Values at the interval's start before the first that is linear: position and speed,
+        position alone, or nothing.
     first, last : number or symbol
-        Control at the interval's start and end.
+        The value that is linear, at the interval's start and end.
     duration : number or symbol
         Length of the interval [s].
     """

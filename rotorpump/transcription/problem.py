@@ -7,8 +7,7 @@ from dataclasses import dataclass
 
 from rotorpump.rig.rig import Rig
 from rotorpump.transcription.arcs import Chain
-from rotorpump.transcription.interval import Form
-from rotorpump.transcription.path import FORCE_LIMITED
+from rotorpump.transcription.form import Form
 
 
 @dataclass(frozen=True)
@@ -40,12 +39,12 @@ class Goal:
 
 @dataclass(frozen=True)
 class Start:
-    """State at the beginning of a motion: angle, momentum, position and speed of the mass (SI)."""
+    """State at the beginning of a motion: angle, momentum, place of the resting mass (SI)."""
 
     angle: float
     momentum: float
     radial: float
-    radial_speed: float = 0.0
+    tangential: float = 0.0
 
 
 @dataclass(frozen=True)
@@ -66,6 +65,10 @@ class Problem:
         Start of the motion; None for a periodic one, which begins at angle zero.
     horizon : float, optional
         Duration [s]; free by default.
+    deadline : float, optional
+        Longest duration [s].
+    load_torque : float, optional
+        Torque that a load takes from the wheel [N m].
     goal : Goal, optional
         What has to be reached at the end.
     closed_momentum : bool
@@ -78,17 +81,21 @@ class Problem:
     terms: tuple[Term, ...]
     start: Start | None
     horizon: float | None = None
+    deadline: float | None = None
+    load_torque: float = 0.0
     goal: Goal | None = None
     closed_momentum: bool = True
 
     @property
-    def keeps_margin(self) -> bool:
-        """Whether the mass has to keep clear of its stops at the end, if it still moves."""
-        return self.start is not None and self.form.rung == FORCE_LIMITED
+    def margins(self) -> tuple[int, ...]:
+        """Axes along which the mass keeps clear of its stops at the end, if it still moves."""
+        if self.start is None:
+            return ()
+        return tuple(k for k, axis in enumerate(self.form.axes) if axis.forceful)
 
     @property
     def own_last(self) -> int | None:
         """Leading variables that the last node does not share with the first."""
         if self.start is not None:
             return None
-        return 2 if self.closed_momentum else 3
+        return self.form.index("momentum") + (0 if self.closed_momentum else 1)

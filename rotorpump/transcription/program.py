@@ -10,22 +10,25 @@ from functools import cached_property
 import numpy as np
 from numpy.typing import NDArray
 
-from rotorpump.physics.constants import Constants
 from rotorpump.transcription.blocks import Block, Functions, assemble
-from rotorpump.transcription.bounds import Bounds, bound_rows, bound_variables
+from rotorpump.transcription.bounds import Bounds, bound_variables
+from rotorpump.transcription.form import TIME
 from rotorpump.transcription.guess import Guess
-from rotorpump.transcription.interval import SHARED, TIME, interval_kernel
+from rotorpump.transcription.interval import interval_kernel
 from rotorpump.transcription.layout import Layout
-from rotorpump.transcription.mesh import Mesh
+from rotorpump.transcription.mesh import FREE, Mesh
 from rotorpump.transcription.nodes import radau_nodes
-from rotorpump.transcription.path import FORCE_LIMITED, INSTANT
+from rotorpump.transcription.path import INSTANT, RATE_LIMITED, SPEED_LIMITED
 from rotorpump.transcription.problem import Problem
+from rotorpump.transcription.row_bounds import bound_rows
 from rotorpump.transcription.scaling import Scales
+from rotorpump.transcription.shared import SHARED, shared_values
 from rotorpump.transcription.terminal import (
     end_kernel,
     evenness_kernel,
     length_kernel,
     margin_kernel,
+    rating_kernel,
 )
 
 Array = NDArray[np.float64]
@@ -79,9 +82,8 @@ class Program:
     @property
     def parameters(self) -> Array:
         """Values of all parameters."""
-        rig = self.problem.rig
-        force = rig.radial.force if self.problem.form.rung == FORCE_LIMITED else 1.0
-        shared = [*Constants.of(rig), *self.scales, force, self.relaxation]
+        problem = self.problem
+        shared = shared_values(problem.rig, problem.load_torque, self.relaxation)
         own = [block.own.ravel() for block in (*self._constraints, *self._objectives)]
         return np.concatenate([shared, *own])
 
@@ -102,10 +104,8 @@ class Program:
 
     @cached_property
     def _constraints(self) -> list[Block]:
-        form, layout = self.problem.form, self.layout
-        intervals = Block(
-            interval_kernel(form), layout.places, self.directions[:, None].astype(float)
-        )
+        problem, form, layout = self.problem, self.problem.form, self.layout
+        intervals = Block(interval_kernel(form), layout.places, self._interval_parameters)
         least, largest = FLEXIBILITY if self.mesh.flexible else (1.0, 0.0)
         shares = np.concatenate(self.mesh.shares)
         lengths = Block(
@@ -114,12 +114,37 @@ class Program:
             np.column_stack([least * shares, largest * shares]),
         )
         blocks = [intervals, lengths]
-        if self.problem.keeps_margin:
-            blocks.append(Block(margin_kernel(form), layout.node[-1:], np.zeros((1, 0))))
-        if self.problem.goal is not None:
-            kernel = end_kernel(self.problem.goal.name, form)
+        last = layout.node[-1:]
+        if problem.margins:
+            blocks.append(Block(margin_kernel(form, problem.margins), last, np.zeros((1, 0))))
+        if form.ratings:
+            blocks.append(Block(rating_kernel(form, form.ratings), last, self._ratings))
+        if problem.goal is not None:
+            kernel = end_kernel(problem.goal.name, form)
             blocks.append(Block(kernel, self._end_places(at_start=False), np.ones((1, 1))))
         return blocks
+
+    @property
+    def _interval_parameters(self) -> Array:
+        """Own parameters of the intervals: direction; resting stop and direction of each slide."""
+        columns = [self.directions]
+        for rests, signs in zip(self.mesh.rests, self.mesh.signs, strict=True):
+            columns += [rests, np.where(rests == FREE, signs, 0)]
+        return np.column_stack(columns).astype(float)
+
+    @property
+    def _ratings(self) -> Array:
+        """Growth of the squared forces at their ratings, in scaled units, shape (1, ratings)."""
+        rated = [name.removesuffix("_square") for name in self.problem.form.ratings]
+        return np.array(
+            [
+                [
+                    (self.problem.rig.slide(axis).continuous_force / self.scales.slide(axis).force)
+                    ** 2
+                    for axis in rated
+                ]
+            ]
+        )
 
     @cached_property
     def _objectives(self) -> list[Block]:
@@ -142,17 +167,19 @@ class Program:
     @cached_property
     def _length_places(self) -> NDArray[np.intp]:
         """Independent variable at an interval's ends and at its arc's ends."""
-        which = 0 if self.problem.form.independent == TIME else 1
-        nodes, edges = self.layout.node[:, which], self.mesh.edges
+        nodes, edges = self.layout.nodes(self.problem.form.independent), self.mesh.edges
         starts = np.repeat(nodes[edges[:-1]], self.mesh.counts)
         ends = np.repeat(nodes[edges[1:]], self.mesh.counts)
         return np.column_stack([nodes[:-1], nodes[1:], starts, ends])
 
     def _end_places(self, *, at_start: bool) -> NDArray[np.intp]:
         # The outer one of the two controls comes last.
-        if at_start:
-            return np.concatenate([self.layout.node[0], self.layout.controls[0, ::-1]])[None, :]
-        return np.concatenate([self.layout.node[-1], self.layout.controls[-1]])[None, :]
+        end = 0 if at_start else -1
+        outer = [
+            (self.layout.controls(k)[end, end] if axis.controls else self.layout.node[end, 0])
+            for k, axis in enumerate(self.problem.form.axes)
+        ]
+        return np.concatenate([self.layout.node[end], outer])[None, :]
 
     def start_from(self, guess: Guess, ends: Sequence[float]) -> Array:
         """Scaled variables of a guess whose arcs end at the given times (or angles)."""
@@ -164,23 +191,36 @@ class Program:
             times, angle_at = inside, guess.at("angle", inside)
         else:
             times, angle_at = np.interp(inside, guess.angle, guess.time), inside
-        first, momentum = layout.collocated(form)
+        first, momentum = layout.collocated
         z = np.zeros(layout.variables)
         node_times = np.append(times[:, 0], times[-1, -1])
-        z[layout.node[:, 0]] = node_times / scales.time
-        z[layout.node[:, 1]] = np.append(angle_at[:, 0], angle_at[-1, -1])
+        z[layout.nodes("time")] = node_times / scales.time
+        z[layout.nodes("angle")] = np.append(angle_at[:, 0], angle_at[-1, -1])
         z[first] = angle_at if form.independent == TIME else times / scales.time
         z[momentum] = guess.at("momentum", times) / scales.momentum
-        sides = np.column_stack([times[:, 0], times[:, -1]])
-        spans = np.maximum(np.diff(sides, axis=1), 1e-9)
-        radial, speed = guess.at("radial", sides), guess.at("radial_speed", sides)
-        if form.rung == INSTANT:
-            controls = radial
-        elif form.rung == FORCE_LIMITED:
-            controls = np.repeat(np.diff(speed, axis=1) / spans, 2, axis=1)
-        else:
-            controls = np.repeat(np.diff(radial, axis=1) / spans, 2, axis=1)
-        for order, column in zip(range(form.rung), ("radial", "radial_speed"), strict=False):
-            z[layout.node[:, 3 + order]] = scales.scale_slide(order, guess.at(column, node_times))
-        z[layout.controls] = scales.scale_slide(form.rung, controls)
+        for k in range(len(form.axes)):
+            self._start_slide(z, k, guess, np.column_stack([times[:, 0], times[:, -1]]))
         return self.variable_bounds.clip(z)
+
+    def _start_slide(self, z: Array, number: int, guess: Guess, sides: Array) -> None:
+        """Set one slide's variables; ``sides`` are the times at which intervals begin and end."""
+        axis, layout = self.problem.form.axes[number], self.layout
+        scales = self.scales.slide(axis.name)
+        node_times = np.append(sides[:, 0], sides[-1, 1])
+        spans = np.maximum(np.diff(sides, axis=1), 1e-9)
+        place, pace = guess.at(axis.name, sides), guess.at(f"{axis.name}_speed", sides)
+        if axis.rung == INSTANT:
+            controls = place
+        elif axis.rung == SPEED_LIMITED:
+            controls = np.repeat(np.diff(place, axis=1) / spans, 2, axis=1)
+        else:
+            controls = np.repeat(np.diff(pace, axis=1) / spans, 2, axis=1)
+        for order, name in enumerate(axis.node[:2]):
+            z[layout.nodes(name)] = scales.scaled(order, guess.at(name, node_times))
+        if axis.rung == RATE_LIMITED:
+            # an acceleration that is shared by two intervals, and a force that gives it
+            shared = 0.5 * (np.append(controls[:, 0], 0.0) + np.append(0.0, controls[:, 1]))
+            z[layout.nodes(axis.node[2])] = shared / scales.acceleration
+            z[layout.nodes(axis.node[3])] = shared * self.problem.rig.mass / scales.force
+        else:
+            z[layout.controls(number)] = scales.scaled(axis.rung, controls)

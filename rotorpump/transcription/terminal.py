@@ -11,8 +11,9 @@ import casadi
 from rotorpump.physics.energy import energy_above_rest
 from rotorpump.physics.equations import wheel_speed
 from rotorpump.transcription.blocks import Kernel
-from rotorpump.transcription.interval import SHARED, Form, split_shared
-from rotorpump.transcription.path import FORCE_LIMITED, SPEED_LIMITED
+from rotorpump.transcription.form import Form
+from rotorpump.transcription.path import INSTANT, SPEED_LIMITED
+from rotorpump.transcription.shared import SHARED, Shared
 
 
 @cache
@@ -45,40 +46,67 @@ MARGIN = 2e-3
 
 
 @cache
-def margin_kernel(form: Form) -> Kernel:
-    """Position at the end, a little ahead of the mass; variables: the last node.
+def margin_kernel(form: Form, axes: tuple[int, ...]) -> Kernel:
+    """Positions at the end, a little ahead of the mass; variables: the last node.
 
     A motion may end while the mass moves, but not in the moment in which it runs into a stop.
     """
-    z, own = casadi.SX.sym("z", form.node), casadi.SX.sym("q", 0)
-    return Kernel.build(z, own, casadi.SX.sym("p", SHARED), z[3] + MARGIN * z[4])
+    z, own = casadi.SX.sym("z", len(form.node)), casadi.SX.sym("q", 0)
+    ahead = [
+        z[form.index(form.axes[k].name)] + MARGIN * z[form.index(f"{form.axes[k].name}_speed")]
+        for k in axes
+    ]
+    return Kernel.build(z, own, casadi.SX.sym("p", SHARED), casadi.vertcat(*ahead))
 
 
-def end_value(name: str, form: Form, node: Any, controls: Any, shared: Any) -> Any:
-    """Scaled value of an end quantity: "energy", "speed", "momentum", "angle" or "time".
+@cache
+def rating_kernel(form: Form, sums: tuple[str, ...]) -> Kernel:
+    """Squared forces summed up to the end, less what their ratings allow by then.
+
+    Variables: the last node; own parameters: for each sum, its growth per scaled time at the
+    rating.
+    """
+    z, own = casadi.SX.sym("z", len(form.node)), casadi.SX.sym("q", len(sums))
+    time = z[form.index("time")]
+    rows = [z[form.index(name)] - own[k] * time for k, name in enumerate(sums)]
+    return Kernel.build(z, own, casadi.SX.sym("p", SHARED), casadi.vertcat(*rows))
+
+
+def end_value(name: str, form: Form, node: Any, controls: Any, shared: Shared) -> Any:
+    """Scaled value of an end quantity: a variable of the node, "energy" or "speed".
 
     "speed" and "momentum" are squared, which makes the direction of rotation irrelevant.
     """
-    c, s, _, _ = split_shared(shared)
-    order = form.rung
-    radial = s.slide_value(0, node[3] if order else controls[1])
-    slide_speed: Any = 0.0
-    if order == FORCE_LIMITED:
-        slide_speed = s.slide_value(1, node[4])
-    elif order == SPEED_LIMITED:
-        slide_speed = s.slide_value(1, controls[1])
-    momentum = node[2] * s.momentum
+    if name == "momentum":
+        return node[form.index(name)] ** 2
+    if name not in ("energy", "speed"):
+        return node[form.index(name)]
+    places, speeds = {}, {}
+    for k, axis in enumerate(form.axes):
+        scales = shared.scales.slide(axis.name)
+        position = controls[k] if axis.rung == INSTANT else node[form.index(axis.name)]
+        places[axis.name] = scales.value(0, position)
+        if axis.rung == SPEED_LIMITED:
+            speeds[axis.name] = scales.value(1, controls[k])
+        elif axis.rung > SPEED_LIMITED:
+            speeds[axis.name] = scales.value(1, node[form.index(f"{axis.name}_speed")])
+    c, s = shared.constants, shared.scales
+    slides = shared.slides(places, speeds)
+    momentum = node[form.index("momentum")] * s.momentum
     if name == "energy":
-        return energy_above_rest(casadi, c, node[1], momentum, radial, slide_speed) / s.energy
-    if name == "speed":
-        return (wheel_speed(c, momentum, radial) * s.time) ** 2
-    return {"momentum": node[2] ** 2, "angle": node[1], "time": node[0]}[name]
+        angle = node[form.index("angle")]
+        return energy_above_rest(casadi, c, angle, momentum, slides) / s.energy
+    return (wheel_speed(c, momentum, slides) * s.time) ** 2
 
 
 @cache
 def end_kernel(name: str, form: Form) -> Kernel:
-    """Weight times an end quantity; variables: the last node and the last controls."""
-    z, own = casadi.SX.sym("z", form.node + 2), casadi.SX.sym("q", 1)
-    shared = casadi.SX.sym("p", SHARED)
-    value = end_value(name, form, z[: form.node], z[form.node :], shared)
-    return Kernel.build(z, own, shared, own * value)
+    """Weight times an end quantity; variables: the last node and the last control of each slide.
+
+    A slide without controls of its own has a variable of the node in that place, unread.
+    """
+    width = len(form.node)
+    z, own = casadi.SX.sym("z", width + len(form.axes)), casadi.SX.sym("q", 1)
+    symbols = casadi.SX.sym("p", SHARED)
+    value = end_value(name, form, z[:width], z[width:], Shared.of(form, symbols))
+    return Kernel.build(z, own, symbols, own * value)
