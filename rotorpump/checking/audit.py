@@ -3,85 +3,77 @@
 
 from __future__ import annotations
 
-import math
-
 import numpy as np
 from numpy.typing import NDArray
 
-from rotorpump.checking.intervals import IntervalSamples
-from rotorpump.physics.constants import Constants
-from rotorpump.physics.friction import friction_torque
-from rotorpump.rig.rig import Rig
+from rotorpump.checking.case import Case
+from rotorpump.checking.first_principles import (
+    angular_momentum,
+    braking_torque,
+    dry_torque,
+    mechanical_energy,
+    weight_torque,
+)
+from rotorpump.checking.intervals import IntervalSamples, gauss_samples
 from rotorpump.solution.check import Check
 from rotorpump.solution.trajectory import Trajectory
 
 Array = NDArray[np.float64]
 
-QUADRATURE_POINTS = 8
 STORED_SHARE = 0.01
-"""Share of the largest energy that an audit counts as turned over at least, where hardly any is."""
+"""Share of the largest energy or momentum that counts as turned over at least."""
+
+STANDING = 1e-9
+"""Share of the largest wheel speed below which the wheel counts as standing."""
 
 
-def audit_check(rig: Rig, trajectory: Trajectory, accuracy: float) -> Check:
+def audit_check(case: Case, trajectory: Trajectory, accuracy: float) -> Check:
     """Balance the energy of the motion, or its momentum where forces hold impulses."""
-    if math.isinf(rig.radial.force):
-        return _momentum_balance(rig, trajectory, accuracy)
-    return _energy_balance(rig, trajectory, accuracy)
+    balance = _momentum_balance if case.told else _energy_balance
+    return balance(case, trajectory, 10.0 * accuracy)
 
 
-def mechanical_energy(
-    rig: Rig, angle: Array, speed: Array, radial: Array, radial_speed: Array
-) -> Array:
-    """Energy above rest from the wheel's speed, shape of the arguments [J].
-
-    Notes
-    -----
-    E = ½ J ω² + ½ m (vρ² + (ρ ω)²) + m g (ρ_outer - ρ cos φ).
-    """
-    wheel = 0.5 * rig.wheel.inertia * speed**2
-    mass = 0.5 * rig.mass * (radial_speed**2 + (radial * speed) ** 2)
-    height = rig.radial.stroke[1] - radial * np.cos(angle)
-    return wheel + mass + rig.mass * rig.gravity * height
-
-
-def _energy_balance(rig: Rig, trajectory: Trajectory, accuracy: float) -> Check:
-    """Drive work ∫F v dt less friction loss ∫|T ω| dt, against the rise of energy."""
-    samples, weights = _quadrature(trajectory)
+def _energy_balance(case: Case, trajectory: Trajectory, tolerance: float) -> Check:
+    """Work of the drives less what axle, rails and load take, against the rise of energy."""
+    rig = case.rig
+    samples, weights = gauss_samples(trajectory)
     speed = samples.column("speed")
-    power = samples.column("radial_force") * samples.column("radial_speed")
-    lost = float(np.sum(weights * np.abs(speed * _friction(rig, speed))))
-    stored = mechanical_energy(
-        rig, trajectory.angle, trajectory.speed, trajectory.radial, trajectory.radial_speed
+    powers = {axis: _drive_power(samples, axis) for axis in case.forced}
+    taken = np.abs(speed) * (
+        braking_torque(rig, speed, samples.column("axle_load")) + case.load_torque
     )
-    gap = float(np.sum(weights * power)) - lost - float(stored[-1] - stored[0])
-    turned_over = float(np.sum(weights * np.abs(power))) + lost
+    for axis in case.forced:
+        rubbing = rig.slide(axis).rubbing
+        taken = taken + rubbing * np.abs(samples.column(f"{axis}_speed"))
+    lost = float(np.sum(weights * taken))
+    work = sum(float(np.sum(weights * power)) for power in powers.values())
+    stored = mechanical_energy(rig, trajectory.angle, trajectory.speed, trajectory.slides)
+    gap = work - lost - float(stored[-1] - stored[0])
+    turned_over = sum(float(np.sum(weights * np.abs(power))) for power in powers.values()) + lost
     scale = np.maximum(turned_over, STORED_SHARE * np.max(stored))
     detail = f"{gap:.3g} J missing of {turned_over:.4g} J turned over"
-    return Check("energy audit", float(abs(gap) / scale), 10.0 * accuracy, "1", detail)
+    return Check("energy audit", float(abs(gap) / scale), tolerance, "1", detail)
 
 
-def _momentum_balance(rig: Rig, trajectory: Trajectory, accuracy: float) -> Check:
-    """Torque of weight and friction over time, against the rise of I ω."""
-    samples, weights = _quadrature(trajectory)
-    speed, radial = samples.column("speed"), samples.column("radial")
-    weight = -rig.mass * rig.gravity * radial * np.sin(samples.column("angle"))
-    friction = _friction(rig, speed)
-    sticking = (speed == 0.0) & (np.abs(weight) <= rig.friction.coulomb)
-    torque = np.where(sticking, 0.0, weight + friction)
-    momentum = (rig.wheel.inertia + rig.mass * trajectory.radial**2) * trajectory.speed
-    gap = float(np.sum(weights * torque)) - float(momentum[-1] - momentum[0])
-    turned_over = np.sum(weights * (np.abs(weight) + np.abs(friction)))
+def _drive_power(samples: IntervalSamples, axis: str) -> Array:
+    return samples.column(f"{axis}_force") * samples.column(f"{axis}_speed")
+
+
+def _momentum_balance(case: Case, trajectory: Trajectory, tolerance: float) -> Check:
+    """Torque of weight, friction and load over time, against the rise of H."""
+    rig = case.rig
+    samples, weights = gauss_samples(trajectory)
+    speed, load = samples.column("speed"), samples.column("axle_load")
+    weight = weight_torque(rig, samples.column("angle"), samples.slides)
+    braking = braking_torque(rig, speed, load) + case.load_torque
+    standing = np.abs(speed) <= STANDING * np.max(np.abs(trajectory.speed))
+    # what holds a standing wheel is what the rate of its momentum asks for, within its bounds
+    held = dry_torque(rig, load) + case.load_torque
+    holding = np.clip(samples.rate("momentum") - weight, -held, held)
+    resistance = np.where(standing, holding, -np.sign(speed) * braking)
+    momentum = angular_momentum(rig, trajectory.speed, trajectory.slides)
+    gap = float(np.sum(weights * (weight + resistance))) - float(momentum[-1] - momentum[0])
+    turned_over = float(np.sum(weights * (np.abs(weight) + np.abs(resistance))))
+    scale = np.maximum(turned_over, STORED_SHARE * np.max(np.abs(momentum))) or 1.0
     detail = f"{gap:.3g} N m s missing; impulses on the slide leave no energy to audit"
-    return Check("momentum audit", float(abs(gap) / turned_over), 10.0 * accuracy, "1", detail)
-
-
-def _quadrature(trajectory: Trajectory) -> tuple[IntervalSamples, Array]:
-    """Return samples at the Gauss points of every interval, and their weights [s]."""
-    places, shares = np.polynomial.legendre.leggauss(QUADRATURE_POINTS)
-    samples = IntervalSamples(trajectory, 0.5 * (places + 1.0))
-    return samples, 0.5 * shares * samples.length
-
-
-def _friction(rig: Rig, speed: Array) -> Array:
-    torque: Array = friction_torque(Constants.of(rig), speed, np.sign(speed))
-    return torque
+    return Check("momentum audit", float(abs(gap) / scale), tolerance, "1", detail)

@@ -9,7 +9,10 @@ from itertools import pairwise
 import numpy as np
 from numpy.typing import NDArray
 
+from rotorpump.physics.state import Slides
 from rotorpump.solution.trajectory import HELD, Trajectory
+
+QUADRATURE_POINTS = 8
 
 Array = NDArray[np.float64]
 Indices = NDArray[np.intp]
@@ -21,6 +24,7 @@ class _Group:
 
     rows: Indices
     nodes: Indices
+    times: Array
     full: Array
     own: Array
 
@@ -61,7 +65,7 @@ class IntervalSamples:
             nodes = breaks[kept[rows]][:, None] + np.arange(count + 1)
             full = _lagrange(trajectory.time[nodes], self.time[rows])
             own = _lagrange(trajectory.time[nodes[:, 1:]], self.time[rows])
-            self._groups.append(_Group(rows, nodes, full, own))
+            self._groups.append(_Group(rows, nodes, self.time[rows], full, own))
 
     def column(self, name: str) -> Array:
         """Return one quantity at every sample, shape (k, p), in its SI unit."""
@@ -73,6 +77,33 @@ class IntervalSamples:
             )
             values[group.rows] = np.einsum("rpn,rn->rp", basis, source[nodes])
         return values
+
+    def rate(self, name: str) -> Array:
+        """Return the rate of one quantity at every sample, shape (k, p), in its SI unit by s."""
+        source = getattr(self._trajectory, name)
+        values = np.empty_like(self.time)
+        for group in self._groups:
+            nodes = group.nodes[:, 1:] if name in HELD else group.nodes
+            basis = _lagrange_rates(self._trajectory.time[nodes], group.times)
+            values[group.rows] = np.einsum("rpn,rn->rp", basis, source[nodes])
+        return values
+
+    @property
+    def slides(self) -> Slides:
+        """Place and speed of the mass at every sample, each of shape (k, p) [m, m/s]."""
+        return Slides(
+            self.column("radial"),
+            self.column("radial_speed"),
+            self.column("tangential"),
+            self.column("tangential_speed"),
+        )
+
+
+def gauss_samples(trajectory: Trajectory) -> tuple[IntervalSamples, Array]:
+    """Return samples at the Gauss points of every interval, and their weights [s]."""
+    places, shares = np.polynomial.legendre.leggauss(QUADRATURE_POINTS)
+    samples = IntervalSamples(trajectory, 0.5 * (places + 1.0))
+    return samples, 0.5 * shares * samples.length
 
 
 def _lagrange(nodes: Array, wanted: Array) -> Array:
@@ -86,6 +117,22 @@ def _lagrange(nodes: Array, wanted: Array) -> Array:
                     :, None
                 ]
     return basis
+
+
+def _lagrange_rates(nodes: Array, wanted: Array) -> Array:
+    """Rates of the Lagrange polynomials, as `_lagrange`."""
+    count = nodes.shape[1]
+    rates = np.zeros((*wanted.shape, count))
+    for j in range(count):
+        for k in range(count):
+            if k == j:
+                continue
+            term = np.ones(wanted.shape) / (nodes[:, j] - nodes[:, k])[:, None]
+            for i in range(count):
+                if i not in {j, k}:
+                    term *= (wanted - nodes[:, i, None]) / (nodes[:, j] - nodes[:, i])[:, None]
+            rates[:, :, j] += term
+    return rates
 
 
 @dataclass(frozen=True)
@@ -103,6 +150,12 @@ class Polynomial:
         for coefficient in self.coefficients:
             value = value * place + coefficient
         return value
+
+    def rate(self) -> Polynomial:
+        """Return its rate, a polynomial of one degree less."""
+        degree = len(self.coefficients) - 1
+        rates = [(degree - k) * value / self.half for k, value in enumerate(self.coefficients[:-1])]
+        return Polynomial(self.middle, self.half, tuple(rates) or (0.0,))
 
 
 def held_polynomials(trajectory: Trajectory, name: str) -> list[Polynomial | None]:

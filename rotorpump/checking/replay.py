@@ -1,34 +1,45 @@
 # SPDX-License-Identifier: BSD-3-Clause
-"""Replay: the motion integrated anew under what the drive does, arc by arc."""
+"""Replay: the motion integrated anew under what the drives do, arc by arc.
+
+The forces of the drives are replayed where they move the mass. Where the motion itself is the
+control, its speeds are, and a jump of a speed is an impulse; H is kept.
+"""
 
 from __future__ import annotations
 
 import math
-from collections.abc import Callable
 from dataclasses import dataclass
 from itertools import pairwise
-from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
 
-from rotorpump.checking.driven import DrivenSlide
+from rotorpump.checking.case import Case
 from rotorpump.checking.intervals import held_polynomials
-from rotorpump.checking.phases import ReplayFailure, State
-from rotorpump.checking.prescribed import PrescribedSlide
-from rotorpump.physics.constants import Constants
-from rotorpump.rig.rig import Rig
-from rotorpump.solution.check import Check
+from rotorpump.physics.contacts import Action
+from rotorpump.physics.impulses import PLACES
+from rotorpump.physics.phases import SimulationFailure, State
+from rotorpump.physics.simulation import Simulator
+from rotorpump.rig.rig import AXES, Rig
 from rotorpump.solution.trajectory import Trajectory
 
 Array = NDArray[np.float64]
-Advance = Callable[[int, State], State]
 
-SEAT = 1e-6
-"""Gap in strokes, and speed in largest speeds, below which the mass counts as on a stop."""
+STATES = (
+    "angle",
+    "speed",
+    "radial",
+    "radial_speed",
+    "tangential",
+    "tangential_speed",
+)
+"""Columns of a trajectory that make a state."""
+
+LEAP = 1e-9
+"""Share of the stroke beyond which a change of place in no time is one, and not rounding."""
 
 ESCAPE = 10.0
-"""Distance from the axle, in outer ends of the stroke, at which a replay is given up."""
+"""Distance from the axle, in the largest the rig has, at which a replay is given up."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -37,144 +48,97 @@ class Replay:
 
     Parameters
     ----------
-    states : ndarray, shape (m, 4) or (m, 3)
-        Angle, speed, radial position and, where a force drives the slide, radial speed at the end
-        of each of the m intervals [rad, rad/s, m, m/s]; infinite where the replay was given up.
-    arrival_speed : float
-        Largest speed at which the mass arrived at a stop [m/s].
+    states : ndarray, shape (m, 6)
+        Angle, speed, place and speed along both axes at the end of each of the m intervals
+        [rad, rad/s, m, m/s, m, m/s]; infinite where the replay was given up.
+    arrivals : dict of str to float
+        Largest speed at which the mass arrived at a stop of each axis [m/s].
     message : str
         Why the replay was given up, if it was.
     """
 
     states: Array
-    arrival_speed: float
+    arrivals: dict[str, float]
     message: str = ""
 
 
-def replay_motion(rig: Rig, trajectory: Trajectory) -> Replay:
+def replay_motion(case: Case, trajectory: Trajectory) -> Replay:
     """Integrate the motion anew; each arc starts from the trajectory's state at its first node."""
-    if math.isinf(rig.radial.force):
-        names, arrivals = ["angle", "speed", "radial"], [0.0]
-        advance = _prescribed_advance(rig, trajectory)
-    else:
-        slide = DrivenSlide(Constants.of(rig), rig.radial.bearing, [0.0])
-        names, arrivals = ["angle", "speed", "radial", "radial_speed"], slide.arrivals
-        advance = _driven_advance(slide, trajectory)
-    nodes = np.column_stack([getattr(trajectory, name) for name in names])
-    states = np.full((trajectory.breaks.size - 1, len(names)), np.inf)
+    run = _Run(case, trajectory)
+    states = np.full((trajectory.breaks.size - 1, len(STATES)), np.inf)
     messages = []
     first = np.searchsorted(trajectory.breaks, trajectory.arcs)
     for arc, (begin, end) in enumerate(pairwise(first)):
-        state = nodes[trajectory.breaks[begin]].tolist()
+        state = state_at(case.rig, trajectory, int(trajectory.breaks[begin]))
         try:
             for interval in range(begin, end):
-                state = advance(interval, state)
-                _stay(state, rig)
+                state = run.advance(interval, state)
+                _stay(state, case.rig)
                 states[interval] = state
-        except ReplayFailure as failure:
+        except SimulationFailure as failure:
             messages.append(f"arc {arc + 1}: {failure}")
-    return Replay(states, max(arrivals), "; ".join(messages))
+    return Replay(states, run.simulator.arrivals, "; ".join(messages))
 
 
-def replay_checks(
-    rig: Rig, trajectory: Trajectory, replay: Replay, accuracy: float
-) -> tuple[Check, ...]:
-    """Compare a replay with the trajectory at the end of every interval.
-
-    Notes
-    -----
-    Deviations are relative: the angle to the angle turned in its arc or 1 rad if that is less,
-    speeds to their largest magnitude, the radial position to the stroke. Stops never brake a
-    moving mass: the distance in which the drive alone would have taken away the speed with which
-    the mass arrives at one, relative to the stroke, is held against the same tolerance. So is the
-    speed of a mass that should rest on a stop: arriving a little early or late, it has a speed
-    there that is of the order of the square root of the deviation in time.
-    """
-    ends = trajectory.breaks[1:]
-    pace = slide_pace(rig, trajectory)
-    spin = float(np.max(np.abs(trajectory.speed))) or 1.0
-    scales = {
-        "angle": np.maximum(1.0, _arc_turns(trajectory)),
-        "speed": np.full(ends.size, spin),
-        "radial": np.full(ends.size, rig.radial.length),
-        "radial_speed": np.full(ends.size, pace),
-    }
-    seated = _seated(rig, trajectory, ends)
-    checks = []
-    for name, states in zip(scales, replay.states.T, strict=False):
-        deviation = np.abs(states - getattr(trajectory, name)[ends]) / scales[name]
-        if name == "radial_speed" and rig.radial.bearing:
-            deviation = np.where(seated, _stopping_share(rig, deviation * pace), deviation)
-        # argmax finds a value that is not a number first, so such a motion cannot pass
-        worst = int(np.argmax(deviation))
-        detail = replay.message or f"largest at {trajectory.time[ends[worst]]:.4g} s"
-        title = f"replay {name.replace('_', ' ')}"
-        checks.append(Check(title, float(deviation[worst]), 10.0 * accuracy, "1", detail))
-    if not math.isinf(rig.radial.force) and rig.radial.bearing:
-        detail = f"at most {replay.arrival_speed:.3g} m/s"
-        share = _stopping_share(rig, replay.arrival_speed)
-        checks.append(Check("arrival at stops", share, 10.0 * accuracy, "1", detail))
-    return tuple(checks)
+def state_at(rig: Rig, trajectory: Trajectory, node: int) -> State:
+    """State at a node; an axis without a slide is at rest."""
+    state = [float(getattr(trajectory, name)[node]) for name in STATES]
+    for axis in AXES:
+        if axis not in rig.driven:
+            state[PLACES[axis] + 1] = 0.0
+    return state
 
 
-def _seated(rig: Rig, trajectory: Trajectory, nodes: NDArray[np.intp]) -> NDArray[np.bool_]:
-    """Whether the mass rests on a stop at these nodes."""
-    gaps = np.abs(trajectory.radial[nodes, None] - np.array(rig.radial.stroke)).min(axis=1)
-    still = np.abs(trajectory.radial_speed[nodes]) <= SEAT * slide_pace(rig, trajectory)
-    return np.asarray((gaps <= SEAT * rig.radial.length) & still)
+class _Run:
+    """The replay of one motion, interval by interval."""
 
+    def __init__(self, case: Case, trajectory: Trajectory) -> None:
+        self.case = case
+        self.simulator: Simulator = case.simulator()
+        self.trajectory = trajectory
+        self.edges = trajectory.time[trajectory.breaks].tolist()
+        control = "force" if case.forced else "speed"
+        self.courses = {
+            axis: held_polynomials(trajectory, f"{axis}_{control}") for axis in case.rig.driven
+        }
 
-def _stopping_share(rig: Rig, speed: Any) -> Any:
-    """Distance in which the drive alone takes this speed away, relative to the stroke."""
-    return speed**2 * rig.mass / (2.0 * rig.radial.force * rig.radial.length)
+    def advance(self, interval: int, state: State) -> State:
+        """State at the end of an interval."""
+        begin, end = self.edges[interval : interval + 2]
+        if not end > begin:
+            return self._jump(int(self.trajectory.breaks[interval + 1]), state)
+        for axis in self.case.told:
+            course = self.courses[axis][interval]
+            assert course is not None
+            state = self.simulator.set_speed(state, axis, course(begin))
+        actions = self._action("radial", interval), self._action("tangential", interval)
+        return self.simulator.advance(begin, end, actions, state)
 
+    def _action(self, axis: str, interval: int) -> Action:
+        if axis not in self.courses:
+            return Action()
+        course = self.courses[axis][interval]
+        assert course is not None
+        return Action(force=course) if self.case.forced else Action(acceleration=course.rate())
 
-def slide_pace(rig: Rig, trajectory: Trajectory) -> float:
-    """Largest slide speed of a motion; one stroke per its duration if the mass never moves."""
-    fastest = float(np.max(np.abs(trajectory.radial_speed)))
-    return fastest or rig.radial.length / trajectory.duration
-
-
-def _arc_turns(trajectory: Trajectory) -> Array:
-    """Angle that the wheel turns through in the arc of each interval [rad]."""
-    turned = np.zeros(trajectory.breaks.size - 1)
-    first = np.searchsorted(trajectory.breaks, trajectory.arcs)
-    for arc, (begin, end) in enumerate(pairwise(first)):
-        nodes = slice(trajectory.arcs[arc], trajectory.arcs[arc + 1] + 1)
-        turned[begin:end] = np.ptp(trajectory.angle[nodes])
-    return turned
-
-
-def _driven_advance(slide: DrivenSlide, trajectory: Trajectory) -> Advance:
-    forces = held_polynomials(trajectory, "radial_force")
-    edges = trajectory.time[trajectory.breaks].tolist()
-
-    def advance(interval: int, state: State) -> State:
-        force = forces[interval]
-        if force is None:
-            return state
-        return slide.advance(edges[interval], edges[interval + 1], force, state)
-
-    return advance
-
-
-def _prescribed_advance(rig: Rig, trajectory: Trajectory) -> Advance:
-    slide = PrescribedSlide(Constants.of(rig))
-    paces = held_polynomials(trajectory, "radial_speed")
-    edges = trajectory.time[trajectory.breaks].tolist()
-    radial = trajectory.radial[trajectory.breaks].tolist()
-
-    def advance(interval: int, state: State) -> State:
-        pace = paces[interval]
-        if pace is not None:
-            return slide.advance(edges[interval], edges[interval + 1], pace, state)
-        # only a slide without a speed limit may jump; any other stays, and the jump shows
-        return slide.jump(state, radial[interval + 1]) if math.isinf(rig.radial.speed) else state
-
-    return advance
+    def _jump(self, node: int, state: State) -> State:
+        """State after an interval of no length: a motion that is told may jump there."""
+        for axis in self.case.told:
+            slide = self.case.rig.slide(axis)
+            place = float(getattr(self.trajectory, axis)[node])
+            leaps = abs(place - state[PLACES[axis]]) > LEAP * slide.length
+            # only a slide without a speed limit may leap; any other stays, and the leap shows
+            if leaps and math.isinf(slide.speed):
+                state = self.simulator.set_place(state, axis, place)
+            speed = float(getattr(self.trajectory, f"{axis}_speed")[node])
+            state = self.simulator.set_speed(state, axis, speed)
+        return state
 
 
 def _stay(state: State, rig: Rig) -> None:
     """Raise if a replay has left the neighbourhood of the rig."""
-    if not all(map(math.isfinite, state)) or abs(state[2]) > ESCAPE * rig.radial.stroke[1]:
-        raise ReplayFailure(f"the mass leaves the rig, radial position {state[2]:.3g} m")
+    ends = [max(map(abs, rig.stroke(axis))) for axis in AXES]
+    place = math.hypot(state[2], state[4])
+    if not all(map(math.isfinite, state)) or place > ESCAPE * math.hypot(*ends):
+        where = ", ".join(f"{state[PLACES[axis]]:.3g} m {axis}" for axis in AXES)
+        raise SimulationFailure(f"the mass leaves the rig ({where})")

@@ -3,11 +3,14 @@
 
 from __future__ import annotations
 
+from rotorpump.checking.agreement import replay_checks
 from rotorpump.checking.audit import audit_check
+from rotorpump.checking.case import Case
+from rotorpump.checking.claim import claim_check
 from rotorpump.checking.consistency import consistency_checks, structure_checks
 from rotorpump.checking.ends import end_checks
 from rotorpump.checking.margins import margin_checks
-from rotorpump.checking.replay import replay_checks, replay_motion
+from rotorpump.checking.replay import replay_motion
 from rotorpump.rig.rig import Rig
 from rotorpump.solution.check import Check
 from rotorpump.solution.objective import Objective
@@ -44,18 +47,21 @@ def check_motion(
     Raises
     ------
     InputError
-        If the task has no objective of the claimed name.
+        If the task has no objective of the claimed name, or the rig lacks what it needs.
     """
     structure = structure_checks(trajectory)
     if not all(check.passed for check in structure):
         return structure
-    replay = replay_motion(rig, trajectory)
+    case = Case(rig, task, claimed.name)
+    claim = claim_check(case, trajectory, claimed)
+    replay = replay_motion(case, trajectory)
     return (
         *structure,
-        *replay_checks(rig, trajectory, replay, accuracy),
-        audit_check(rig, trajectory, accuracy),
+        *replay_checks(case, trajectory, replay, accuracy),
+        audit_check(case, trajectory, accuracy),
         *margin_checks(rig, trajectory),
-        *end_checks(rig, task, trajectory, claimed),
+        *end_checks(case, trajectory),
+        claim,
         *consistency_checks(rig, trajectory),
     )
 
