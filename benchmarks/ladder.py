@@ -10,12 +10,13 @@ from collections.abc import Iterator
 from dataclasses import replace
 
 import rotorpump
+from rotorpump.measures import measure
 from rotorpump.rig.friction import AxleFriction
 from rotorpump.rig.rig import Rig
 from rotorpump.rig.slide import Slide
 from rotorpump.rig.wheel import Wheel
 from rotorpump.solution.wording import verdict_lines
-from rotorpump.tasks import Rotate, SpinUp, Task, measure
+from rotorpump.tasks import Rotate, SpinUp, Task
 
 FACTORS = (1, 2, 4, 8, 16, 32, 64)
 COLUMNS = "{:<14} {:>10} {:>10} {:>12} {:>14}  {:<9} {:>8}"

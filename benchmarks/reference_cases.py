@@ -17,9 +17,9 @@ from pathlib import Path
 
 import rotorpump
 from rotorpump.errors import InputError
+from rotorpump.measures import measure
 from rotorpump.rig.rigfile import read_rig
 from rotorpump.solution.wording import verdict_lines
-from rotorpump.tasks import measure
 
 COLUMNS = "{:<14} {:>12} {:<6} {:>8}  {:<9} {:<9} {:>10} {:>7} {:>8}"
 HEAD = (

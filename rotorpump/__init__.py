@@ -11,6 +11,7 @@ from __future__ import annotations
 from rotorpump.errors import InputError, SolveError, SolveWarning
 from rotorpump.laws.instantaneous import run_ideal
 from rotorpump.laws.practical import run_practical
+from rotorpump.rig.bearings import bearing_friction
 from rotorpump.rig.example import example_rig
 from rotorpump.rig.friction import AxleFriction
 from rotorpump.rig.rig import Rig
@@ -45,6 +46,7 @@ __all__ = [
     "Trajectory",
     "Wheel",
     "__version__",
+    "bearing_friction",
     "compare",
     "example_rig",
     "optimize",

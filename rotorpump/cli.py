@@ -18,22 +18,26 @@ from rotorpump.exit_codes import INTERRUPTED, NO_SOLUTION, WRONG_INPUT, exit_cod
 from rotorpump.version import installed_version
 
 DESCRIPTION = """\
-A wheel is spun up with no motor on its axle by a mass that moves along a slide fixed to it.
-rotorpump sets the instantaneous (ideal) law beside the best motion under the limits of the slide's
-drive, and checks that motion independently."""
+A wheel is spun up with no motor on its axle by a mass that moves along slides fixed to it.
+rotorpump sets the instantaneous (ideal) law beside the best motion under the limits of the drives,
+and checks that motion independently."""
 
 RIG_FILES = """\
 rig files (TOML, SI units):
-  [wheel]     inertia [kg m2], mass [kg]
+  [wheel]     inertia [kg m2], mass [kg], unbalance [kg m], unbalance_angle [rad]
   [mass]      mass [kg], the moving mass
-  [radial]    stroke = [lo, hi] [m from the axle], speed [m/s], force [N],
-              end_stops = "bear" | "avoid"
-  [friction]  viscous [N m s], coulomb [N m], quadratic [N m s2]
+  [radial]    stroke = [lo, hi] [m from the axle], and any of speed [m/s], force [N],
+              power [W], force_rate [N/s], continuous_force [N rms], stall_force [N] with
+              no_load_speed [m/s], motor_constant [N/sqrt(W)], rubbing [N],
+              end_stops = "bear" | "avoid"; or position [m], which holds the mass there
+  [tangential]  the same, across the radius; held at 0 without this table
+  [friction]  viscous [N m s], coulomb [N m], quadratic [N m s2], load [1] with
+              journal_radius [m]
   [task]      kind = "pump": duration [s], start_angle [rad], start_speed [rad/s],
-                start_radial [m]
-              kind = "spin-up": energy [J] or speed [rad/s] or full_turn = true, and a start
-                as for "pump"
-              kind = "rotate"
+                start_radial [m], start_tangential [m]
+              kind = "spin-up": energy [J] or speed [rad/s] or full_turn = true, deadline [s],
+                and a start as for "pump"
+              kind = "rotate": mean_speed [rad/s], load_torque [N m], direction = 1 | -1
   [rig]       gravity [m/s2] in the plane of the wheel
 
 exit codes:
@@ -89,22 +93,22 @@ def build_parser() -> argparse.ArgumentParser:
         commands,
         "compare",
         "ideal, practical and optimal motion side by side",
-        "Set the ideal law, the practical law and the best motion under the limits of the drive"
+        "Set the ideal law, the practical law and the best motion under the limits of the drives"
         " side by side.",
         "folder for compare.json, trajectory.csv of the best motion, and pictures",
     )
     compare.add_argument(
         "--attribute",
         action="store_true",
-        help="also find the best motion under the speed limit alone, to tell apart what speed and"
-        " force limit cost (one more solve)",
+        help="also find the best motion under the speed limits alone, to tell apart what they and"
+        " the other limits cost (one more solve)",
     )
     compare.set_defaults(run=run_compare)
     optimize = _command(
         commands,
         "optimize",
-        "the best motion under the limits of the drive",
-        "Find the best motion under the limits of the drive, and check it.",
+        "the best motion under the limits of the drives",
+        "Find the best motion under the limits of the drives, and check it.",
         "folder for solution.json, trajectory.csv, and pictures",
     )
     optimize.add_argument(
@@ -142,8 +146,9 @@ def _command(
     command.add_argument(
         "--objective",
         metavar="NAME",
-        help="what to make the most or least of: energy [J] of a pump, time [s] of a spin-up,"
-        " speed [rad/s] of a rotation; the default of the task if not given",
+        help="what to make the most or least of. pump: energy, momentum, speed (at the end);"
+        " spin-up: time, work, heat, work+heat; rotate: speed, work, heat, work+heat, 'load power'."
+        " The first by default; work for a rotation with a mean_speed",
     )
     command.add_argument(
         "--accuracy",

@@ -10,6 +10,7 @@ from pathlib import Path
 
 from rotorpump.console import complain, say, watching
 from rotorpump.exit_codes import exit_code
+from rotorpump.measures import check_measure, measure
 from rotorpump.quantities import positive
 from rotorpump.rig.example import example_rig
 from rotorpump.rig.rig import Rig
@@ -28,7 +29,7 @@ from rotorpump.solution.wording import verdict_lines
 from rotorpump.studies.comparison import Comparison, compare
 from rotorpump.studies.comparison_storage import comparison_document, save_comparison
 from rotorpump.studies.optimization import optimize
-from rotorpump.tasks import Task, measure
+from rotorpump.tasks import Task
 
 STDOUT = "-"
 
@@ -48,13 +49,14 @@ class _Request:
     def of(cls, arguments: argparse.Namespace) -> _Request:
         """Check the arguments; raises InputError."""
         rig, task = example_rig() if arguments.rig is None else read_rig(arguments.rig)
-        objective = measure(task, arguments.objective).name
+        wanted = measure(task, arguments.objective)
+        check_measure(rig, wanted)
         accuracy = positive("--accuracy", arguments.accuracy)
         folder = None if arguments.out is None else check_folder(arguments.out, "--out")
         report: str | None = arguments.json
         if report not in (None, STDOUT):
             _check_report(report, folder)
-        return cls(rig, task, objective, accuracy, folder, report)
+        return cls(rig, task, wanted.name, accuracy, folder, report)
 
 
 def _check_report(report: str, folder: Path | None) -> None:

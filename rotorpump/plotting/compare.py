@@ -30,8 +30,6 @@ from rotorpump.solution.wording import quantity, task_words
 from rotorpump.studies.comparison import Comparison
 from rotorpump.tasks import Rotate
 
-PANELS = 3
-
 
 @dataclass(frozen=True, eq=False)
 class _Motion:
@@ -51,32 +49,33 @@ def plot_comparison(comparison: Comparison, axes: Sequence[Axes] | None = None) 
     ----------
     comparison : Comparison
         The comparison. A motion that does not exist is left out.
-    axes : sequence of Axes, length 3, optional
+    axes : sequence of Axes, length 3, or 5 for two slides, optional
         Where to draw; in a new figure by default.
 
     Returns
     -------
     tuple of Axes
-        Energy, position and force against time. For steady rotation: wheel speed, position and
-        force against the wheel angle. The ideal law is not among the forces: its moves take
-        infinite ones.
+        Energy, then position and force of each slide against time. For steady rotation: wheel
+        speed, positions and forces against the wheel angle. The ideal law is not among the forces:
+        its moves take infinite ones.
 
     Raises
     ------
     InputError
-        If the number of axes is not 3.
+        If the number of axes does not fit.
     """
-    panels = stacked(PANELS, 8.2) if axes is None else tuple(axes)
-    if len(panels) != PANELS:
-        raise InputError("axes", f"must be {PANELS} Axes", len(panels))
     turning = isinstance(comparison.task, Rotate)
     across = "angle" if turning else "time"
-    names = ("speed" if turning else "energy", "radial", "radial_force")
+    slides = [name for axis in comparison.rig.driven for name in (axis, f"{axis}_force")]
+    names = ("speed" if turning else "energy", *slides)
+    panels = stacked(len(names), 2.9 + 1.8 * len(names)) if axes is None else tuple(axes)
+    if len(panels) != len(names):
+        raise InputError("axes", f"must be {len(names)} Axes", len(panels))
     motions = _motions(comparison)
     for motion in motions:
         along, *columns = curves(motion.trajectory, (across, *names))
         for panel, name, column in zip(panels, names, columns, strict=True):
-            if motion.driven or name != "radial_force":
+            if motion.driven or not name.endswith("_force"):
                 draw(panel, along, column, motion.pen, motion.label)
     _finish(comparison, panels, names, across)
     if not turning:
@@ -113,17 +112,18 @@ def _finish(
     comparison: Comparison, panels: tuple[Axes, ...], names: tuple[str, ...], across: str
 ) -> None:
     """Limits, labels, legend and title."""
-    slide = comparison.rig.radial
     for panel, name in zip(panels, names, strict=True):
         dress(panel, name)
-    mark_limits(panels[1], slide.stroke, "ends of the stroke")
-    mark_limits(
-        panels[2],
-        (-slide.force, slide.force),
-        "force limit",
-        "the ideal law takes infinite forces, not shown",
-    )
-    panels[2].set_xlabel(QUANTITIES[across].label, color=INK)
+    for number, slide in enumerate(comparison.rig.slides):
+        force = slide.standing_force
+        mark_limits(panels[1 + 2 * number], slide.stroke, "ends of the stroke")
+        mark_limits(
+            panels[2 + 2 * number],
+            (-force, force),
+            "force limit",
+            "the ideal law takes infinite forces, not shown",
+        )
+    panels[-1].set_xlabel(QUANTITIES[across].label, color=INK)
     panels[0].legend(loc="best", frameon=False)
     factor = comparison.overstatement
     title = task_words(comparison.task)

@@ -33,7 +33,7 @@ COLOURS = LinearSegmentedColormap.from_list("late", ["#1c2466", "#1d8c8c", "#f4a
 """Lighter and yellower with time, so that hue is not the only clue."""
 
 RIM = 1.22
-"""Radius of the drawn rim, in units of the outer end of the stroke."""
+"""Radius of the drawn rim, in units of the farthest place of the mass."""
 
 
 def plot_motion(solution: Solution, axes: Axes | None = None) -> Axes:
@@ -50,8 +50,8 @@ def plot_motion(solution: Solution, axes: Axes | None = None) -> Axes:
     -------
     Axes
         The last two swings (at most one turn) are emphasised, what was before is faint. The
-        circles are the ends of the stroke; gravity points down; positive turns are
-        counter-clockwise.
+        circles are the farthest and the nearest place of the mass; gravity points down; positive
+        turns are counter-clockwise.
 
     Raises
     ------
@@ -61,8 +61,8 @@ def plot_motion(solution: Solution, axes: Axes | None = None) -> Axes:
     trajectory = motion_of(solution)
     axes = single(7.4, 7.0) if axes is None else axes
     rig = solution.rig
-    time, angle, momentum, x, y = _path(trajectory)
-    begin = emphasis(angle, momentum)
+    time, angle, speed, x, y = _path(trajectory)
+    begin = emphasis(angle, speed)
     _draw_wheel(axes, rig)
     if begin > 0:
         early = "path of the mass before"
@@ -75,18 +75,18 @@ def plot_motion(solution: Solution, axes: Axes | None = None) -> Axes:
     return axes
 
 
-def emphasis(angle: Array, momentum: Array) -> int:
+def emphasis(angle: Array, speed: Array) -> int:
     """Index at which the emphasised last part of a motion begins.
 
     Parameters
     ----------
-    angle, momentum : ndarray, shape (n,)
-        Wheel angle [rad] and angular momentum [kg m2/s] along the motion.
+    angle, speed : ndarray, shape (n,)
+        Wheel angle [rad] and speed [rad/s] along the motion.
     """
     if angle.size == 0:
         return 0
-    turns = np.flatnonzero(np.diff(np.sign(momentum[momentum != 0.0])) != 0.0)
-    moving = np.flatnonzero(momentum != 0.0)
+    turns = np.flatnonzero(np.diff(np.sign(speed[speed != 0.0])) != 0.0)
+    moving = np.flatnonzero(speed != 0.0)
     # one swing is what lies between two turning points; the last one may be unfinished
     first = int(moving[turns[-LAST_SWINGS]]) if turns.size >= LAST_SWINGS else 0
     travel = np.concatenate([[0.0], np.cumsum(np.abs(np.diff(angle)))])
@@ -95,11 +95,11 @@ def emphasis(angle: Array, momentum: Array) -> int:
 
 
 def _path(trajectory: Trajectory) -> list[Array]:
-    """Time, angle, momentum, and the place of the mass to the right and up."""
-    names = ("time", "angle", "momentum", "radial", "tangential")
-    time, angle, momentum, radial, tangential = curves(trajectory, names)
+    """Time, angle, wheel speed, and the place of the mass to the right and up."""
+    names = ("time", "angle", "speed", "radial", "tangential")
+    time, angle, speed, radial, tangential = curves(trajectory, names)
     x, y = _place(angle, radial, tangential)
-    return [time, angle, momentum, x, y]
+    return [time, angle, speed, x, y]
 
 
 def _place(angle: Array, radial: Array, tangential: Array) -> tuple[Array, Array]:
@@ -114,12 +114,12 @@ def _place(angle: Array, radial: Array, tangential: Array) -> tuple[Array, Array
 
 
 def _draw_wheel(axes: Axes, rig: Rig) -> None:
-    """Rim, axle, and the ends of the stroke as circles."""
-    inner, outer = rig.radial.stroke
+    """Rim, axle, and the range of the mass's distance from the axle as circles."""
+    inner, outer = _reach(rig)
     axes.add_patch(Circle((0.0, 0.0), RIM * outer, fill=False, edgecolor=FAINT, linewidth=5.0))
     axes.add_patch(Circle((0.0, 0.0), 0.03 * outer, facecolor=INK, zorder=4.0))
     around = np.linspace(0.0, 2.0 * math.pi, 361)
-    for radius, label in ((inner, "ends of the stroke"), (outer, "_")):
+    for radius, label in ((inner, "nearest and farthest place of the mass"), (outer, "_")):
         axes.plot(
             radius * np.cos(around),
             radius * np.sin(around),
@@ -128,6 +128,23 @@ def _draw_wheel(axes: Axes, rig: Rig) -> None:
             linestyle=DOTS,
             label=label,
         )
+
+
+def _reach(rig: Rig) -> tuple[float, float]:
+    """Nearest and farthest place of the mass from the axle [m]."""
+    low, high = rig.stroke("tangential")
+    side = 0.0 if low < 0.0 < high else min(abs(low), abs(high))
+    near, far = rig.stroke("radial")
+    return math.hypot(near, side), math.hypot(far, max(abs(low), abs(high)))
+
+
+def _rails(rig: Rig, radial: float, tangential: float) -> list[tuple[Array, Array]]:
+    """Return the ends of each rail in the wheel, radial and tangential, where the mass is."""
+    rails = {
+        "radial": (np.array(rig.stroke("radial")), np.full(2, tangential)),
+        "tangential": (np.full(2, radial), np.array(rig.stroke("tangential"))),
+    }
+    return [rails[axis] for axis in rig.driven]
 
 
 def _draw_late(axes: Axes, time: Array, points: Array) -> None:
@@ -143,25 +160,22 @@ def _draw_late(axes: Axes, time: Array, points: Array) -> None:
 
 def _draw_instants(axes: Axes, rig: Rig, trajectory: Trajectory, begin: float) -> None:
     """Draw slide and mass at a few numbered instants, spread evenly within the emphasised part."""
-    inner, outer = rig.radial.stroke
     places = (np.arange(INSTANTS) + 0.5) / INSTANTS
     times = begin + places * (float(trajectory.time[-1]) - begin)
     there = trajectory.at(times)
     x, y = _place(there.angle, there.radial, there.tangential)
     moments = ", ".join(f"{moment:.3g}" for moment in times)
     axes.annotate(
-        f"1 to {INSTANTS}: the slide at {moments} s",
+        f"1 to {INSTANTS}: the slides at\n{moments} s",
         (0.015, 0.02),
         xycoords="axes fraction",
         fontsize="small",
         color=INK,
     )
     for index in range(INSTANTS):
-        angle = float(there.angle[index])
-        spoke = np.array([inner, outer])
-        axes.plot(
-            spoke * math.sin(angle), -spoke * math.cos(angle), color=INK, linewidth=1.0, zorder=3.4
-        )
+        for rail in _rails(rig, float(there.radial[index]), float(there.tangential[index])):
+            ends = _place(np.full(2, there.angle[index]), *rail)
+            axes.plot(*ends, color=INK, linewidth=1.0, zorder=3.4)
         axes.plot(x[index], y[index], "o", color="white", markeredgecolor=INK, ms=13, zorder=3.6)
         axes.annotate(
             str(index + 1),
@@ -176,7 +190,7 @@ def _draw_instants(axes: Axes, rig: Rig, trajectory: Trajectory, begin: float) -
 
 def _finish(axes: Axes, rig: Rig, title: str) -> None:
     """Gravity, labels, equal scales."""
-    reach = RIM * rig.radial.stroke[1]
+    reach = RIM * _reach(rig)[1]
     axes.annotate(
         "",
         (-1.12 * reach, 0.72 * reach),

@@ -1,5 +1,5 @@
 # SPDX-License-Identifier: BSD-3-Clause
-"""One motion against time, with the limits of its slide."""
+"""One motion against time, with the limits of its slides."""
 
 from __future__ import annotations
 
@@ -14,42 +14,46 @@ from rotorpump.solution.solution import Solution
 from rotorpump.solution.trajectory import Trajectory
 from rotorpump.solution.wording import quantity, task_words
 
-NAMES = ("angle", "energy", "radial", "radial_speed", "radial_force")
-"""Quantities from top to bottom."""
+WHEEL = ("angle", "energy")
+"""Quantities of the wheel, above those of the slides."""
 
 
 def plot_profiles(solution: Solution, axes: Sequence[Axes] | None = None) -> tuple[Axes, ...]:
-    """Draw wheel angle, energy, and position, speed and drive force of the mass against time.
+    """Draw wheel angle, energy, and the mass's positions, speeds and drive forces against time.
 
     Parameters
     ----------
     solution : Solution
         A solution with a trajectory.
-    axes : sequence of Axes, length 5, optional
+    axes : sequence of Axes, length 5, or 8 for two slides, optional
         Where to draw; in a new figure by default.
 
     Returns
     -------
     tuple of Axes
-        One for each quantity, with the limits of the slide as lines.
+        One for each quantity, with the limits of the slides as lines.
 
     Raises
     ------
     InputError
-        If the solution has no trajectory, or the number of axes is not 5.
+        If the solution has no trajectory, or the number of axes does not fit.
     """
     trajectory = motion_of(solution)
-    panels = stacked(len(NAMES), 10.0) if axes is None else tuple(axes)
-    if len(panels) != len(NAMES):
-        raise InputError("axes", f"must be {len(NAMES)} Axes", len(panels))
-    time, *columns = curves(trajectory, ("time", *NAMES))
-    for panel, name, column in zip(panels, NAMES, columns, strict=True):
+    rig = solution.rig
+    slides = [name for axis in rig.driven for name in (axis, f"{axis}_speed", f"{axis}_force")]
+    names = (*WHEEL, *slides)
+    panels = stacked(len(names), 2.0 * len(names)) if axes is None else tuple(axes)
+    if len(panels) != len(names):
+        raise InputError("axes", f"must be {len(names)} Axes", len(panels))
+    time, *columns = curves(trajectory, ("time", *names))
+    for panel, name, column in zip(panels, names, columns, strict=True):
         draw(panel, time, column, OPTIMAL, QUANTITIES[name].words)
         dress(panel, name)
-    slide = solution.rig.radial
-    mark_limits(panels[2], slide.stroke, "ends of the stroke")
-    mark_limits(panels[3], (-slide.speed, slide.speed), "speed limit")
-    mark_limits(panels[4], (-slide.force, slide.force), "force limit")
+    for number, slide in enumerate(rig.slides):
+        place, pace, force = panels[2 + 3 * number : 5 + 3 * number]
+        mark_limits(place, slide.stroke, "ends of the stroke")
+        mark_limits(pace, (-slide.speed, slide.speed), "speed limit")
+        mark_limits(force, (-slide.standing_force, slide.standing_force), "force limit")
     panels[-1].set_xlabel(QUANTITIES["time"].label, color=INK)
     panels[0].set_title(headline(solution), loc="left", fontsize="medium", color=INK)
     return panels

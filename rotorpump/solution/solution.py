@@ -12,17 +12,18 @@ from rotorpump.solution.check import Check
 from rotorpump.solution.objective import Objective
 from rotorpump.solution.status import Status
 from rotorpump.solution.trajectory import Trajectory
+from rotorpump.solution.usage import DriveUse
 from rotorpump.tasks import Task
 
 
 @dataclass(frozen=True)
 class LimitUse:
-    """How a limit of the drive was used.
+    """How a limit of a drive was used.
 
     Parameters
     ----------
     name : str
-        "force", "speed", "outer stop" or "inner stop".
+        The axis and the limit: "radial speed", "tangential force", "radial high stop" and so on.
     value : float
         The limit, in ``unit``.
     unit : str
@@ -93,7 +94,9 @@ class Solution:
     trajectory : Trajectory or None
         The motion; None if there is none.
     limits : tuple of LimitUse
-        How each limit of the drive was used.
+        How each limit of the drives was used.
+    drives : tuple of DriveUse
+        What the motion asks of each drive.
     mesh : MeshSummary or None
         The final mesh.
     statistics : Statistics
@@ -111,6 +114,7 @@ class Solution:
     objective: Objective
     trajectory: Trajectory | None
     limits: tuple[LimitUse, ...] = ()
+    drives: tuple[DriveUse, ...] = ()
     mesh: MeshSummary | None = None
     statistics: Statistics = field(default_factory=lambda: Statistics(0, 0.0, 0, 0, 0, 0.0))
     checks: tuple[Check, ...] = ()

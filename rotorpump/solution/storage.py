@@ -54,7 +54,7 @@ def solution_document(solution: Solution, sample: float | None = None) -> Docume
     -------
     dict
         With status, success, verified, message, objective, trajectory (a list for each quantity,
-        or None if there is none), checks, limits, statistics.
+        or None if there is none), checks, limits, drives, statistics.
 
     Raises
     ------
@@ -87,6 +87,17 @@ def solution_document(solution: Solution, sample: float | None = None) -> Docume
                 "price": number(limit.price),
             }
             for limit in solution.limits
+        ],
+        "drives": [
+            {
+                "axis": use.axis,
+                "peak_force": number(use.peak_force),
+                "rms_force": number(use.rms_force),
+                "peak_power": number(use.peak_power),
+                "work": number(use.work),
+                "heat": number(use.heat),
+            }
+            for use in solution.drives
         ],
         "statistics": {
             "iterations": statistics.iterations,

@@ -4,7 +4,7 @@
 from __future__ import annotations
 
 from rotorpump.solution.solution import Solution, Statistics
-from rotorpump.solution.wording import limit_lines, quantity, task_words, verdict_lines
+from rotorpump.solution.wording import drive_lines, limit_lines, quantity, task_words, verdict_lines
 
 
 def summarize(solution: Solution) -> str:
@@ -27,9 +27,9 @@ def summarize(solution: Solution) -> str:
     ]
     if solution.success:
         lines += verdict_lines(solution)
-    limits = limit_lines(solution.limits, objective.unit)
-    if limits:
-        lines += ["", *limits]
+    for table in (limit_lines(solution.limits, objective.unit), drive_lines(solution.drives)):
+        if table:
+            lines += ["", *table]
     return "\n".join([*lines, "", effort(solution.statistics)])
 
 

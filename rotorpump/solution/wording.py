@@ -8,6 +8,7 @@ from collections.abc import Sequence
 
 from rotorpump.rig.rigfile import KINDS
 from rotorpump.solution.solution import LimitUse, Solution
+from rotorpump.solution.usage import DriveUse
 from rotorpump.tasks import Pump, Rotate, SpinUp, Task
 
 NOTHING = "-"
@@ -22,13 +23,17 @@ def task_word(task: Task) -> str:
 def task_words(task: Task) -> str:
     """Return a task in words."""
     if isinstance(task, Rotate):
-        return "rotate steadily, one turn"
+        words = "rotate steadily, one turn"
+        words += "" if task.direction > 0 else " clockwise"
+        words += "" if task.mean_speed is None else f", at {task.mean_speed:g} rad/s"
+        return words + ("" if task.load_torque == 0.0 else f", against {task.load_torque:g} N m")
     begin = f"from {task.start_angle:g} rad"
     if task.start_speed != 0.0:
         begin += f" and {task.start_speed:g} rad/s"
     if isinstance(task, Pump):
         return f"pump for {task.duration:g} s {begin}"
-    return f"spin up to {_goal(task)} {begin}"
+    within = "" if task.deadline is None else f" within {task.deadline:g} s"
+    return f"spin up to {_goal(task)} {begin}{within}"
 
 
 def _goal(task: SpinUp) -> str:
@@ -60,7 +65,7 @@ def align(rows: Sequence[Sequence[str]]) -> list[str]:
 
 
 def limit_lines(limits: Sequence[LimitUse], unit: str) -> list[str]:
-    """Return a table of the limits of the drive; ``unit`` is that of the objective."""
+    """Return a table of the limits of the drives; ``unit`` is that of the objective."""
     if not limits:
         return []
     head = ("limit", "value", "share of time at it", "gain from loosening it")
@@ -80,6 +85,25 @@ def _price(limit: LimitUse, unit: str) -> str:
     if math.isnan(limit.price):
         return NOTHING
     return f"{limit.price:.3g} {unit} per {limit.unit}"
+
+
+def drive_lines(drives: Sequence[DriveUse]) -> list[str]:
+    """Return a table of what a motion asks of the drives."""
+    if not drives:
+        return []
+    head = ("drive", "peak force", "rms force", "peak power", "work", "heat")
+    rows = [
+        (
+            use.axis,
+            quantity(use.peak_force, "N"),
+            quantity(use.rms_force, "N"),
+            quantity(use.peak_power, "W"),
+            quantity(use.work, "J"),
+            quantity(use.heat, "J"),
+        )
+        for use in drives
+    ]
+    return align([head, *rows])
 
 
 def verdict_lines(solution: Solution) -> list[str]:

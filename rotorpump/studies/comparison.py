@@ -1,25 +1,30 @@
 # SPDX-License-Identifier: BSD-3-Clause
-"""The ideal law, the practical law and the best motion under the drive's limits, side by side."""
+"""The ideal law, the practical law and the best motion under the drives' limits, side by side."""
 
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from typing import Any
 
 from rotorpump.laws.instantaneous import run_ideal
 from rotorpump.laws.practical import run_practical
+from rotorpump.measures import Measure, check_measure, measure
+from rotorpump.physics.control import EFFORTS
+from rotorpump.quantities import instance
 from rotorpump.rig.rig import Rig
+from rotorpump.rig.slide import Slide
 from rotorpump.solution.law_run import LawRun
 from rotorpump.solution.progress import Progress, Watcher
 from rotorpump.solution.solution import Solution
 from rotorpump.studies.optimization import optimize
-from rotorpump.tasks import Measure, Task, measure
+from rotorpump.studies.solvability import check_solvable
+from rotorpump.tasks import Task
 
 IDEAL_STEP = "no limits"
-SPEED_STEP = "speed limit only"
-OPTIMAL_STEP = "speed and force limits"
-"""Rungs of the ladder from the ideal law to all limits of the drive."""
+SPEED_STEP = "speed limits only"
+OPTIMAL_STEP = "all limits"
+"""Rungs of the ladder from the ideal law to all limits of the drives."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -31,12 +36,12 @@ class Comparison:
     rig, task : Rig, Task
         What was asked.
     ideal, practical : LawRun
-        The instantaneous law, and the practical law within the limits of the drive.
+        The instantaneous law, and the practical law within the limits of the drives.
     optimal : Solution
-        The best motion within the limits of the drive.
+        The best motion within the limits of the drives.
     speed_limited : Solution, optional
-        The best motion within the speed limit alone, if the gap was to be attributed and this took
-        a solve.
+        The best motion within the speed limits alone, if the gap was to be attributed and this
+        took a solve.
     attributed : bool, optional
         Whether the gap was to be attributed to the limits.
     """
@@ -77,7 +82,7 @@ class Comparison:
     def attribution(self) -> tuple[tuple[str, float], ...]:
         """The objective along the ladder of limits: (step, value), from none to all of them.
 
-        The middle step, the speed limit alone, is there only if the gap was to be attributed.
+        The middle step, the speed limits alone, is there only if the gap was to be attributed.
         """
         first = (IDEAL_STEP, self.ideal.objective.value)
         last = (OPTIMAL_STEP, self.optimal_value)
@@ -111,12 +116,13 @@ class Comparison:
         return above / below
 
     def _speed_limited_value(self) -> float:
-        """Best value under the speed limit alone; without such a limit that is the ideal."""
+        """Best value under the speed limits alone; without such a limit that is the ideal."""
         if self.speed_limited is not None:
             return _value(self.speed_limited)
-        if math.isinf(self.rig.radial.speed):
+        if all(math.isinf(slide.top_speed) for slide in self.rig.slides):
             return self.ideal.objective.value
-        return self.optimal_value if math.isinf(self.rig.radial.force) else math.nan
+        forceful = any(slide.forceful for slide in self.rig.slides)
+        return math.nan if forceful else self.optimal_value
 
 
 def compare(
@@ -142,8 +148,8 @@ def compare(
     accuracy : float, optional
         Relative accuracy of the best motion.
     attribute : bool, optional
-        Also find the best motion under the speed limit alone, which tells the cost of the two
-        limits apart; takes one more solve.
+        Also find the best motion under the speed limits alone, which tells their cost apart from
+        that of the other limits; takes one more solve.
     on_failure : {"raise", "return"}, optional
         What to do if there is no best motion.
     progress : callable, optional
@@ -161,7 +167,11 @@ def compare(
     SolveError
         If there is no best motion, unless ``on_failure`` is "return".
     """
-    wanted = measure(task, objective).name
+    instance("rig", rig, Rig)
+    asked = measure(task, objective)
+    check_measure(rig, asked)
+    check_solvable(rig, task, asked)
+    wanted = asked.name
     ideal = run_ideal(rig, task, objective=wanted)
     _tell(progress, "ideal law", ideal)
     practical = run_practical(rig, task, objective=wanted)
@@ -175,10 +185,10 @@ def compare(
         progress=progress,
     )
     speed_limited = None
-    slide = rig.radial
-    if attribute and optimal.success and not (math.isinf(slide.speed) or math.isinf(slide.force)):
+    looser = with_speed_limits_alone(rig)
+    if attribute and optimal.success and looser is not None and wanted not in EFFORTS:
         speed_limited = optimize(
-            replace(rig, radial=replace(slide, force=math.inf)),
+            looser,
             task,
             objective=wanted,
             accuracy=accuracy,
@@ -186,6 +196,19 @@ def compare(
             progress=progress,
         )
     return Comparison(rig, task, ideal, practical, optimal, speed_limited, attribute)
+
+
+def with_speed_limits_alone(rig: Rig) -> Rig | None:
+    """Return the rig without any limit but those of speed.
+
+    None if there is nothing to take away, a slide would have no limit at all, or friction needs
+    finite forces.
+    """
+    speeds = [slide.top_speed for slide in rig.slides]
+    forceful = any(slide.forceful for slide in rig.slides)
+    if not forceful or any(map(math.isinf, speeds)) or rig.friction.load_arm > 0.0:
+        return None
+    return rig.with_slides(lambda slide: Slide(slide.stroke, speed=slide.top_speed))
 
 
 def _tell(progress: Watcher | None, stage: str, run: LawRun) -> None:

@@ -10,6 +10,7 @@ from rotorpump.solution.solution import Solution
 from rotorpump.solution.wording import (
     NOTHING,
     align,
+    drive_lines,
     limit_lines,
     quantity,
     share,
@@ -33,6 +34,7 @@ def tabulate(comparison: Comparison) -> str:
         [_overstatement(comparison)],
         _verdict(comparison.optimal),
         limit_lines(comparison.optimal.limits, comparison.measure.unit),
+        drive_lines(comparison.optimal.drives),
         _attribution(comparison),
         _remarks(comparison),
     ]
@@ -58,12 +60,14 @@ def _overstatement(comparison: Comparison) -> str:
     if math.isnan(factor):
         return f"overstatement of the ideal law: {NOTHING} (one of the two has no value)"
     words = f"overstatement of the ideal law: {factor:.4g}"
-    if factor < 1.0:
-        words += (
-            "\n  below 1: the law is best per half swing and turn, but not for every instant at"
-            " which a motion may end"
-        )
-    return words
+    if factor >= 1.0:
+        return words
+    if len(comparison.rig.driven) > 1:
+        return f"{words}\n  below 1: with both slides no instantaneous law is best, nor is this one"
+    return (
+        f"{words}\n  below 1: the law is best per half swing and turn, but not for every instant at"
+        " which a motion may end"
+    )
 
 
 def _verdict(solution: Solution) -> list[str]:

@@ -7,8 +7,8 @@ import math
 from dataclasses import replace
 
 import rotorpump as rp
+from rotorpump.measures import measure
 from rotorpump.rig.rigfile import write_rig
-from rotorpump.tasks import measure
 
 BENCH = rp.Rig(
     wheel=rp.Wheel(inertia=0.18, mass=2.2),

@@ -29,6 +29,7 @@ OPTIMIZE_KEYS = {
     "trajectory",
     "checks",
     "limits",
+    "drives",
     "statistics",
 }
 HEADINGS = [

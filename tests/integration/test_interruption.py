@@ -95,7 +95,10 @@ def test_a_search_that_is_interrupted_gives_what_it_has_found():
 
 def test_an_optimum_that_is_being_refined_is_kept():
     try:
-        solution = rp.optimize(BENCH, TO_SPEED, on_failure="return", progress=in_refinement)
+        # so accurate a motion takes a refinement
+        solution = rp.optimize(
+            BENCH, TO_SPEED, accuracy=1e-6, on_failure="return", progress=in_refinement
+        )
     except KeyboardInterrupt:
         # it would end the whole test run
         pytest.fail("KeyboardInterrupt reached the caller, and the optimum is lost")

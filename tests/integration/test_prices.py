@@ -20,7 +20,7 @@ STEP = 0.03
 
 @pytest.mark.parametrize(("name", "unit"), [("speed", "m/s"), ("force", "N")])
 def test_a_price_is_the_slope_of_the_best_value(name, unit, rotated):
-    use = next(entry for entry in rotated.limits if entry.name == name)
+    use = next(entry for entry in rotated.limits if entry.name == f"radial {name}")
     limit = getattr(BENCH.radial, name)
     assert (use.value, use.unit) == (limit, unit)
     assert use.active_share > 0.25
@@ -37,7 +37,8 @@ def test_a_price_is_the_slope_of_the_best_value(name, unit, rotated):
 
 def test_prices_tell_which_limit_matters(pumped):
     speed, force = (
-        next(entry for entry in pumped.limits if entry.name == name) for name in ("speed", "force")
+        next(entry for entry in pumped.limits if entry.name == name)
+        for name in ("radial speed", "radial force")
     )
     # the drive is strong enough for this pump: it reaches its force for some instants only
     assert force.active_share < 0.15 < speed.active_share

@@ -16,9 +16,9 @@ from rotorpump.rig.rig import Rig
 from rotorpump.rig.slide import Slide
 from rotorpump.rig.wheel import Wheel
 from rotorpump.transcription.arcs import Arc
+from rotorpump.transcription.form import ANGLE, TIME, AxisForm, Form
 from rotorpump.transcription.guess import Guess
-from rotorpump.transcription.interval import ANGLE, TIME, Form
-from rotorpump.transcription.mesh import OUTER, Mesh
+from rotorpump.transcription.mesh import HIGH, Mesh
 from rotorpump.transcription.path import FORCE_LIMITED
 from rotorpump.transcription.problem import Problem, Start, Term
 from rotorpump.transcription.program import Program
@@ -63,8 +63,9 @@ def held_program(form: Form, intervals: int) -> Program:
     start = Start(ANGLE_START, INERTIA * SPEED_START, 0.4)
     horizon = DURATION if timed else None
     problem = Problem(RIG, form, chain, (Term("time", 1.0),), start, horizon=horizon)
-    mesh = Mesh.uniform(1, intervals, flexible=False)
-    return Program(problem, mesh.with_rests(np.full(intervals, OUTER), flexible=False))
+    mesh = Mesh.uniform(1, intervals, 1, flexible=False)
+    marks = np.full((1, intervals), HIGH)
+    return Program(problem, mesh.with_pattern(marks, marks, flexible=False))
 
 
 def solve_rows(program: Program) -> np.ndarray:
@@ -73,7 +74,9 @@ def solve_rows(program: Program) -> np.ndarray:
     motion = exact_motion()
     time = np.linspace(0.0, DURATION, 400)
     angle, momentum = motion.sol(time)
-    guess = Guess(time, angle, momentum, np.full_like(time, 0.4), np.zeros_like(time))
+    still = np.zeros_like(time)
+    states = np.vstack([angle, momentum, still + 0.4, still, still, still])
+    guess = Guess.from_states(RIG, time, states)
     timed = form.independent == TIME
     z = program.start_from(guess, [DURATION if timed else LAST_ANGLE])
     variables, rows = program.variable_bounds, program.row_bounds
@@ -93,7 +96,8 @@ def solve_rows(program: Program) -> np.ndarray:
 
 
 def end_error(independent: str, degree: int, intervals: int) -> float:
-    program = held_program(Form(independent, FORCE_LIMITED, degree), intervals)
+    axis = AxisForm("radial", FORCE_LIMITED)
+    program = held_program(Form(independent, (axis,), degree), intervals)
     z = solve_rows(program)
     last, scales = program.layout.node[-1], program.scales
     momentum = z[last[2]] * scales.momentum

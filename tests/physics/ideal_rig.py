@@ -17,19 +17,23 @@ PULL = 1.2 * 9.80665 * 0.4
 FAR, NEAR = 0.25 + 1.2 * 0.4**2, 0.25 + 1.2 * 0.2**2
 
 
-def rig(viscous=0.05, coulomb=0.0, quadratic=0.0) -> Rig:
-    return Rig(
-        wheel=Wheel(inertia=0.25, mass=3.0),
-        mass=1.2,
-        radial=Slide(stroke=(0.2, 0.4)),
-        friction=AxleFriction(viscous=viscous, coulomb=coulomb, quadratic=quadratic),
-    )
+SIDEWAYS = Slide(stroke=(-0.12, 0.12))
+
+
+def rig(viscous=0.05, coulomb=0.0, quadratic=0.0, **changes) -> Rig:
+    parts = {
+        "wheel": Wheel(inertia=0.25, mass=3.0),
+        "mass": 1.2,
+        "radial": Slide(stroke=(0.2, 0.4)),
+        "friction": AxleFriction(viscous=viscous, coulomb=coulomb, quadratic=quadratic),
+    }
+    return Rig(**(parts | changes))
 
 
 def pumped_and_lost(run, friction) -> tuple[float, float]:
     """Energy added by the jumps, and friction's work by quadrature over the trajectory."""
     t = run.trajectory
-    jump = np.diff(t.radial) != 0.0
+    jump = (np.diff(t.radial) != 0.0) | (np.diff(t.tangential) != 0.0)
     pumped = float(np.diff(t.energy)[jump].sum())
     power = np.abs(t.speed) * friction.coulomb + t.speed**2 * friction.viscous
     power = power + np.abs(t.speed) ** 3 * friction.quadratic

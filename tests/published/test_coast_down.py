@@ -12,6 +12,10 @@ from scipy.integrate import solve_ivp
 
 from rotorpump.physics.constants import Constants
 from rotorpump.physics.friction import friction_torque
+from rotorpump.rig.friction import AxleFriction
+from rotorpump.rig.rig import Rig
+from rotorpump.rig.slide import Slide
+from rotorpump.rig.wheel import Wheel
 
 INERTIA = 0.5
 SPEED = 12.0
@@ -40,7 +44,9 @@ class Rest:
 )
 @pytest.mark.parametrize("direction", [1.0, -1.0])
 def test_time_and_angle_to_rest(coulomb, viscous, quadratic, time, angle, direction):
-    constants = Constants(INERTIA, 1.0, 9.81, viscous, coulomb, quadratic, 0.1, 0.2)
+    friction = AxleFriction(viscous=viscous, coulomb=coulomb, quadratic=quadratic)
+    slide = Slide(stroke=(0.1, 0.2))
+    constants = Constants.of(Rig(wheel=Wheel(0.3), mass=1.0, radial=slide, friction=friction))
 
     def rates(_time, state):
         # Counted along the motion, so that rest is approached from above either way.

@@ -9,25 +9,46 @@ from itertools import islice
 import pytest
 
 from rotorpump.laws.hybrid import march
-from rotorpump.laws.stretch import End, Instant
+from rotorpump.laws.moves import Instant
+from rotorpump.laws.pointwise import Urge
+from rotorpump.laws.stretch import End
 from rotorpump.physics.constants import Constants
+from rotorpump.physics.state import Slides
+from rotorpump.rig.friction import AxleFriction
+from rotorpump.rig.rig import Rig
+from rotorpump.rig.slide import Slide
+from rotorpump.rig.wheel import Wheel
 
-WHEEL = Constants(0.5, 2.0, 9.81, 0.0, 0.0, 0.0, 0.2, 0.4)
-POINT = Constants(1e-13, 1.0, 9.81, 0.0, 0.0, 0.0, 0.5, 1.0)
+
+def constants_of(inertia, mass, inner, outer, gravity=9.81):
+    slide = Slide(stroke=(inner, outer))
+    return Constants.of(Rig(Wheel(inertia), mass, slide, AxleFriction(0.0), gravity=gravity))
 
 
-def hold_outside(angle, momentum, direction):
-    return 1.0
+WHEEL = constants_of(0.5, 2.0, 0.2, 0.4)
+POINT = constants_of(1e-13, 1.0, 0.5, 1.0)
+
+
+def hold_outside(axis, slides):
+    """Never wants the inner end."""
+    return {0.2: Urge(0.0, 0.0, 1.0)}
+
+
+def outside(constants):
+    return Slides(constants.radial_high)
+
+
+def inertia_outside(constants):
+    return constants.wheel_inertia + constants.mass * constants.radial_high**2
 
 
 def frequency(constants):
-    inertia = constants.wheel_inertia + constants.mass * constants.outer**2
-    return math.sqrt(constants.mass * constants.gravity * constants.outer / inertia)
+    pull = constants.mass * constants.gravity * constants.radial_high
+    return math.sqrt(pull / inertia_outside(constants))
 
 
 def first_end(constants, speed):
-    inertia = constants.wheel_inertia + constants.mass * constants.outer**2
-    start = Instant(0.0, 0.0, inertia * speed, constants.outer)
+    start = Instant(0.0, 0.0, inertia_outside(constants) * speed, outside(constants))
     return next(march(constants, hold_outside, start))
 
 
@@ -48,7 +69,7 @@ def first_end(constants, speed):
 )
 @pytest.mark.parametrize("constants", [WHEEL, POINT])
 def test_period_of_large_swings(constants, degrees, ratio):
-    start = Instant(0.0, math.radians(degrees), 0.0, constants.outer)
+    start = Instant(0.0, math.radians(degrees), 0.0, outside(constants))
     motion = list(islice(march(constants, hold_outside, start), 4))
     assert [s.end for s in motion] == [End.BOTTOM, End.TURN, End.BOTTOM, End.TURN]
     period = motion[-1].time[-1] * frequency(constants) / (2.0 * math.pi)
@@ -69,8 +90,7 @@ def test_period_of_large_swings(constants, degrees, ratio):
 )
 def test_period_of_rotation(ratio, turn):
     pace = frequency(WHEEL)
-    inertia = 0.5 + 2.0 * 0.4**2
-    start = Instant(0.0, 0.0, 2.0 * ratio * pace * inertia, 0.4)
+    start = Instant(0.0, 0.0, 2.0 * ratio * pace * inertia_outside(WHEEL), outside(WHEEL))
     motion = list(islice(march(WHEEL, hold_outside, start), 2))
     assert [s.end for s in motion] == [End.TOP, End.BOTTOM]
     assert motion[-1].time[-1] * pace == pytest.approx(turn, rel=1e-8)
@@ -85,8 +105,8 @@ def test_speed_at_the_separatrix():
 def test_angle_within_a_swing():
     # φ = 2 asin(k sn(ω₀ t, k)) for an amplitude of 1.2 rad, ω₀ = 1 rad/s and t = 3 s from the
     # lowest point: 0.491539969148 rad, computed.
-    slow = Constants(1e-13, 1.0, 1.0, 0.0, 0.0, 0.0, 0.5, 1.0)
+    slow = constants_of(1e-13, 1.0, 0.5, 1.0, gravity=1.0)
     speed = 2.0 * math.sin(0.6)
-    motion = list(march(slow, hold_outside, Instant(0.0, 0.0, speed, 1.0), 3.0))
+    motion = list(march(slow, hold_outside, Instant(0.0, 0.0, speed, outside(slow)), 3.0))
     assert motion[-1].time[-1] == pytest.approx(3.0, abs=1e-12)
     assert motion[-1].angle[-1] == pytest.approx(0.491539969148, abs=1e-8)

@@ -17,36 +17,51 @@ import pytest
 from scipy.optimize import brentq
 
 from rotorpump.laws.hybrid import march
-from rotorpump.laws.pointwise import landmark_preference, pointwise_preference
-from rotorpump.laws.stretch import End, Instant, Stretch
+from rotorpump.laws.moves import Instant
+from rotorpump.laws.pointwise import landmark_rule, pointwise_rule
+from rotorpump.laws.stretch import End, Stretch
 from rotorpump.physics.constants import Constants
+from rotorpump.physics.state import Slides
+from rotorpump.rig.friction import AxleFriction
+from rotorpump.rig.rig import Rig
+from rotorpump.rig.slide import Slide
+from rotorpump.rig.wheel import Wheel
 
 GRAVITY = 9.81
 
 
+def constants_of(inertia, mass, stroke, viscous=0.0, coulomb=0.0, gravity=GRAVITY):
+    friction = AxleFriction(viscous, coulomb)
+    return Constants.of(Rig(Wheel(inertia), mass, Slide(stroke), friction, gravity=gravity))
+
+
 def wheel(viscous=0.0, coulomb=0.0):
     """I₀ = 0.5 kg m2, m = 2 kg, ρ = 0.4/0.2 m."""
-    return Constants(0.5, 2.0, GRAVITY, viscous, coulomb, 0.0, 0.2, 0.4)
+    return constants_of(0.5, 2.0, (0.2, 0.4), viscous, coulomb)
 
 
 def point_mass():
     """A pendulum of 1.1/0.9 m; a wheel inertia of 1e-12 kg m2 changes 12th digits alone."""
-    return Constants(1e-12, 1.0, GRAVITY, 0.0, 0.0, 0.0, 0.9, 1.1)
+    return constants_of(1e-12, 1.0, (0.9, 1.1))
 
 
-def swing_from(constants, angle, preference=None) -> list[Stretch]:
+def outside(constants):
+    return Slides(constants.radial_high)
+
+
+def swing_from(constants, angle, rule=None) -> list[Stretch]:
     """Stretches from rest outside up to the next turning point, or the top."""
-    law = preference or pointwise_preference(constants)
+    law = rule or pointwise_rule(constants)
     stretches = []
-    for stretch in march(constants, law, Instant(0.0, angle, 0.0, constants.outer)):
+    for stretch in march(constants, law, Instant(0.0, angle, 0.0, outside(constants))):
         stretches.append(stretch)
         if stretch.end in (End.TURN, End.TOP, End.STUCK):
             return stretches
     raise AssertionError("the swing did not end")
 
 
-def amplitude_after(constants, angle, preference=None) -> float:
-    last = swing_from(constants, angle, preference)[-1]
+def amplitude_after(constants, angle, rule=None) -> float:
+    last = swing_from(constants, angle, rule)[-1]
     assert last.end is End.TURN
     return abs(last.last.angle)
 
@@ -82,8 +97,8 @@ def test_chain_of_swings_up_to_the_first_turn():
     angles.append(151.160158)
     times = [1.004441, 2.011111, 3.021911, 4.040476, 5.074025, 6.138128, 7.273609, 8.748013]
     constants = point_mass()
-    start = Instant(0.0, math.radians(10.0), 0.0, constants.outer)
-    motion = list(islice(march(constants, pointwise_preference(constants), start), 18))
+    start = Instant(0.0, math.radians(10.0), 0.0, outside(constants))
+    motion = list(islice(march(constants, pointwise_rule(constants), start), 18))
     ends = [stretch.end for stretch in motion]
     assert ends == [End.BOTTOM, End.TURN] * 8 + [End.BOTTOM, End.TOP]
     turns = [stretch.last for stretch in motion if stretch.end is End.TURN]
@@ -94,8 +109,8 @@ def test_chain_of_swings_up_to_the_first_turn():
 def test_gain_per_full_turn():
     # 2 m g (ρ₁ - ρ₂ I₂/I₁) in the far state at the top; derived. J.
     constants = wheel()
-    start = Instant(0.0, 0.0, 10.0, constants.outer)
-    motion = islice(march(constants, pointwise_preference(constants), start), 8)
+    start = Instant(0.0, 0.0, 10.0, outside(constants))
+    motion = islice(march(constants, pointwise_rule(constants), start), 8)
     tops = [stretch.last.momentum for stretch in motion if stretch.end is End.TOP]
     energies = [momentum**2 / (2.0 * (0.5 + 2.0 * 0.4**2)) for momentum in tops]
     assert np.diff(energies) == pytest.approx([10.144975609756] * 3, abs=1e-7)
@@ -107,7 +122,7 @@ def test_work_of_the_drive_in_a_half_swing():
     falling, rising = swing_from(constants, math.pi / 6.0)
     inward = rising.first.energy(constants) - falling.last.energy(constants)
     turn = rising.last
-    released = Instant(turn.time, turn.angle, 0.0, constants.outer)
+    released = Instant(turn.time, turn.angle, 0.0, outside(constants))
     outward = released.energy(constants) - turn.energy(constants)
     assert inward + outward == pytest.approx(1.92158377407881, abs=1e-8)
 
@@ -116,7 +131,7 @@ def test_work_of_the_drive_in_a_half_swing():
 def test_coulomb_growth_with_moves_at_the_landmarks(start, after):
     # (I₁/I₂)(S₁g(1 - cos θ₀) - c θ₀) = S₂g(1 - cos θ₁) + c θ₁, S = m ρ, c = 0.3 N m; derived. deg.
     constants = wheel(coulomb=0.3)
-    grown = amplitude_after(constants, math.radians(start), landmark_preference)
+    grown = amplitude_after(constants, math.radians(start), landmark_rule(constants))
     assert math.degrees(grown) == pytest.approx(after, abs=1e-7)
     # The pointwise rule comes in before the lowest point and gains a little more.
     better = math.degrees(amplitude_after(constants, math.radians(start)))
@@ -142,7 +157,8 @@ def test_coulomb_growth_of_the_pointwise_rule(start):
 def test_coulomb_threshold_of_growth():
     # (1 - cos T)/T = c (I₁ + I₂)/(g (S₁I₁ - S₂I₂)), c = 0.3 N m: T = 11.61057484 deg; derived.
     threshold = math.radians(11.61057484)
-    after = amplitude_after(wheel(coulomb=0.3), threshold, landmark_preference)
+    constants = wheel(coulomb=0.3)
+    after = amplitude_after(constants, threshold, landmark_rule(constants))
     assert after == pytest.approx(threshold, abs=1e-9)
 
 
@@ -152,7 +168,7 @@ def test_coulomb_threshold_of_growth():
         (wheel(viscous=0.5), 1.1256941857590),
         (wheel(viscous=0.6520261038547684), 1.0),
         # The critical friction of J = 0.25 kg m2, m = 1.2 kg, ρ = 0.4/0.2 m.
-        (Constants(0.25, 1.2, 9.80665, 0.38348770, 0.0, 0.0, 0.2, 0.4), 1.0),
+        (constants_of(0.25, 1.2, (0.2, 0.4), 0.38348770, gravity=9.80665), 1.0),
     ],
 )
 def test_viscous_growth_of_small_swings(constants, factor):
@@ -164,9 +180,9 @@ def test_viscous_growth_of_small_swings(constants, factor):
 def test_momentum_stays_in_every_jump():
     # Motions of the law: the angle and the angular momentum go on, the position jumps.
     constants = wheel(viscous=0.1)
-    start = Instant(0.0, 1.0, 0.0, constants.outer)
-    motion = list(march(constants, pointwise_preference(constants), start, 6.0))
-    jumps = [(a, b) for a, b in pairwise(motion) if a.radial != b.radial]
+    start = Instant(0.0, 1.0, 0.0, outside(constants))
+    motion = list(march(constants, pointwise_rule(constants), start, 6.0))
+    jumps = [(a, b) for a, b in pairwise(motion) if a.slides != b.slides]
     assert len(jumps) > 5
     for before, after in jumps:
         assert after.first.momentum == before.last.momentum

@@ -13,6 +13,7 @@ from rotorpump.solution.law_run import LawRun
 from rotorpump.solution.objective import Objective
 from rotorpump.solution.solution import LimitUse, MeshSummary, Solution, Statistics
 from rotorpump.solution.status import Status
+from rotorpump.solution.usage import DriveUse
 from rotorpump.studies.comparison import Comparison
 from rotorpump.tasks import SpinUp
 
@@ -31,9 +32,10 @@ def made_solution(**changes) -> Solution:
         objective=objective,
         trajectory=trajectory,
         limits=(
-            LimitUse("speed", 0.8, "m/s", 0.25, 1.5),
-            LimitUse("force", 40.0, "N", 0.125, math.nan),
+            LimitUse("radial speed", 0.8, "m/s", 0.25, 1.5),
+            LimitUse("radial force", 40.0, "N", 0.125, math.nan),
         ),
+        drives=(DriveUse("radial", 40.0, 22.5, 18.0, 9.5, math.nan),),
         mesh=MeshSummary((30, 30), 3),
         statistics=STATISTICS,
         checks=(PASSED,),
@@ -49,6 +51,7 @@ def unsolved(status: Status, **changes) -> Solution:
         "objective": Objective("energy", math.nan, "J"),
         "trajectory": None,
         "limits": (),
+        "drives": (),
         "checks": (),
         "verified": False,
     }

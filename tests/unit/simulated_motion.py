@@ -16,13 +16,11 @@ import numpy as np
 from scipy.integrate import solve_ivp
 from scipy.optimize import brentq
 
+from rotorpump.checking.case import Case
+from rotorpump.checking.first_principles import angular_momentum
 from rotorpump.physics.constants import Constants
-from rotorpump.physics.equations import (
-    accelerations,
-    contact_force,
-    momentum_rate,
-    wheel_speed,
-)
+from rotorpump.physics.forces import accelerations
+from rotorpump.physics.state import HOLD, Push, Slides
 from rotorpump.rig.friction import AxleFriction
 from rotorpump.rig.rig import Rig
 from rotorpump.rig.slide import Slide
@@ -39,6 +37,10 @@ STEP = 0.02
 Force = Callable[[list[float]], float]
 
 
+def nothing(_):
+    return 0.0
+
+
 def example_rig(**changes) -> Rig:
     parts = {
         "wheel": Wheel(inertia=0.25, mass=3.0),
@@ -49,24 +51,52 @@ def example_rig(**changes) -> Rig:
     return Rig(**(parts | changes))
 
 
-class Simulation:
-    """Collects the nodes of one phase after the other; a state is [φ, ω, ρ, vρ]."""
+def two_axes(**changes) -> Rig:
+    """Both slides, an unbalance, and all kinds of friction."""
+    parts = {
+        "wheel": Wheel(inertia=0.25, mass=3.0, unbalance=0.06, unbalance_angle=0.8),
+        "radial": Slide(stroke=(0.2, 0.4), force=60.0, rubbing=1.5),
+        "tangential": Slide(stroke=(-0.15, 0.1), force=50.0, rubbing=1.0),
+        "friction": AxleFriction(0.03, 0.05, 0.01, 0.02, 0.008),
+    }
+    return example_rig(**(parts | changes))
 
-    def __init__(self, rig: Rig, state: list[float]) -> None:
+
+class Simulation:
+    """Collects the nodes of one phase after the other; a state is [φ, ω, ρ, vρ, τ, vτ]."""
+
+    def __init__(self, rig: Rig, state: list[float], load_torque=0.0, step=STEP) -> None:
         self.rig = rig
-        self.constants = Constants.of(rig)
-        self.state = state
+        self.load_torque, self.step = load_torque, step
+        self.constants = Constants.of(rig, load_torque)
+        self.state = [*state, rig.stroke("tangential")[0], 0.0] if len(state) == 4 else state
         self.time = [0.0]
-        self.nodes = [[*state, 0.0]]
+        self.nodes = [[*self.state, 0.0, 0.0, 0.0, 0.0]]
         self.breaks = [0]
 
-    def solve(self, force: Force, longest: float, until=None, rests=False, direction=None):
-        """Integrate one phase from the present state, without keeping it."""
+    def motion(self, forces, rests=(False, False), direction=None, ways=(0, 0)):
+        """The motion of one phase as a function of the state."""
         sign = math.copysign(1.0, self.state[1]) if direction is None else direction
+        rubbing = [way * _rubbing(self.rig, axis) for axis, way in self.axes(ways)]
+        held = [rest or axis not in self.rig.driven for axis, rest in self.axes(rests)]
+
+        def motion(state):
+            pushes = [
+                HOLD if stays else Push(force(state) - rubbed)
+                for stays, force, rubbed in zip(held, forces, rubbing, strict=True)
+            ]
+            return accelerations(
+                math, self.constants, *state[:2], Slides(*state[2:]), *pushes, sign
+            )
+
+        return motion
+
+    def solve(self, motion, longest, until=None):
+        """Integrate one phase from the present state, without keeping it."""
 
         def rates(_, state):
-            wheel, mass = accelerations(math, self.constants, *state, force(state), sign)
-            return [state[1], wheel, 0.0, 0.0] if rests else [state[1], wheel, state[3], mass]
+            found = motion(state)
+            return [state[1], found.wheel, state[3], found.radial, state[5], found.tangential]
 
         events = None
         if until is not None:
@@ -86,19 +116,31 @@ class Simulation:
             events=events,
         )
 
-    def run(self, force: Force, longest: float, until=None, rests=False, direction=None) -> None:
-        """Add a phase: up to ``longest``, or until a function of the state crosses zero."""
+    def axes(self, values):
+        return zip(("radial", "tangential"), values, strict=True)
+
+    def run(self, force: Force, longest: float, until=None, rests=False, across=None, **known):
+        """Add a phase: up to ``longest``, or until a function of the state crosses zero.
+
+        ``force`` is that of the radial drive and ``across`` that of the tangential one; ``rests``
+        holds the mass along the radial axis, or along both if it is a pair.
+        """
         if until is None and longest <= 0.0:
             return
-        found = self.solve(force, longest, until, rests, direction)
+        forces = force, nothing if across is None else across
+        rests = rests if isinstance(rests, tuple) else (rests, False)
+        motion = self.motion(forces, rests, **known)
+        found = self.solve(motion, longest, until)
         assert found.success
         assert until is None or found.status == 1, "the phase never ends"
         begin, length = self.time[-1], found.t[-1]
-        edges = np.linspace(0.0, length, max(1, math.ceil(length / STEP)) + 1)
+        edges = np.linspace(0.0, length, max(1, math.ceil(length / self.step)) + 1)
         for left, right in pairwise(edges):
             for at in left + (right - left) * PLACES:
                 state = found.sol(at).tolist()
-                self.nodes.append([*state, force(state)])
+                there = motion(state)
+                contacts = there.radial_contact, there.tangential_contact
+                self.nodes.append([*state, *(push(state) for push in forces), *contacts])
                 self.time.append(begin + at)
             self.breaks.append(len(self.time) - 1)
         self.state = found.y[:, -1].tolist()
@@ -106,58 +148,92 @@ class Simulation:
     def stand(self, duration: float, force: float) -> None:
         """Add a phase in which neither wheel nor mass moves."""
         begin = self.time[-1]
+        still = accelerations(
+            math,
+            self.constants,
+            self.state[0],
+            0.0,
+            Slides(*self.state[2:]),
+            HOLD,
+            HOLD,
+            0.0,
+            stuck=True,
+        )
         for at in duration * PLACES:
-            self.nodes.append([*self.state, force])
+            contacts = still.radial_contact, still.tangential_contact
+            self.nodes.append([*self.state, force, 0.0, *contacts])
             self.time.append(begin + at)
         self.breaks.append(len(self.time) - 1)
 
     def stroke(self, goal: float) -> None:
-        """Add full force, constant speed and full braking, to rest at ``goal``."""
+        """Add full force, constant speed and full braking, to rest at the radial ``goal``."""
         way = math.copysign(1.0, goal - self.state[2])
         strength, pace = self.rig.radial.force, self.rig.radial.speed
         self.run(lambda _: way * strength, 1.0, until=lambda s: way * s[3] - pace)
         self.state[3] = way * pace
         before = list(self.state)
 
+        def solve(force, longest, until=None):
+            return self.solve(self.motion((force, nothing)), longest, until)
+
         def miss(duration):
             self.state = before
             if duration > 0.0:
-                self.state = self.solve(self._steady, duration).y[:, -1].tolist()
-            braking = self.solve(lambda _: -way * strength, 1.0, until=lambda s: way * s[3])
+                self.state = solve(self.steady, duration).y[:, -1].tolist()
+            braking = solve(lambda _: -way * strength, 1.0, until=lambda s: way * s[3])
             self.state = before
             return way * (braking.y[2, -1] - goal)
 
         duration = brentq(miss, 0.0, abs(goal - before[2]) / pace, xtol=1e-13)
-        self.run(self._steady, duration)
+        self.run(self.steady, duration)
         self.run(lambda _: -way * strength, 1.0, until=lambda s: way * s[3])
         self.state[2], self.state[3] = goal, 0.0
 
-    def _steady(self, state: list[float]) -> float:
-        return contact_force(math, self.constants, *state[:3], 0.0)
+    def steady(self, state: list[float]) -> float:
+        """Radial force at which a mass on the radial axis is not accelerated."""
+        angle, speed, radial = state[:3]
+        return -self.rig.mass * (self.rig.gravity * math.cos(angle) + radial * speed**2)
 
     def trajectory(self, arcs=None) -> Trajectory:
-        angle, speed, radial, slide_speed, force = np.array(self.nodes).T
-        momentum = (self.rig.wheel.inertia + self.rig.mass * radial**2) * speed
+        columns = np.array(self.nodes).T
+        slides = Slides(*columns[2:6])
         return trajectory_of(
             self.rig,
             self.time,
-            angle,
-            momentum,
-            radial,
-            slide_speed,
-            force,
+            columns[0],
+            angular_momentum(self.rig, columns[1], slides),
+            slides,
+            (columns[6], columns[7]),
             self.breaks,
             [0, self.breaks[-1]] if arcs is None else arcs,
+            contacts=(columns[8], columns[9]),
+            load_torque=self.load_torque,
         )
 
 
+def _rubbing(rig: Rig, axis: str) -> float:
+    return rig.slide(axis).rubbing if axis in rig.driven else 0.0
+
+
 def end_energy(rig: Rig, trajectory: Trajectory) -> float:
-    """Energy above rest at the end, written out once more."""
+    """Energy above rest at the end, written out once more in fixed axes for a balanced wheel."""
     angle, speed = trajectory.angle[-1], trajectory.speed[-1]
-    radial, slide_speed = trajectory.radial[-1], trajectory.radial_speed[-1]
-    height = rig.radial.stroke[1] - radial * math.cos(angle)
-    turning = 0.5 * (rig.wheel.inertia + rig.mass * radial**2) * speed**2
-    return float(turning + 0.5 * rig.mass * slide_speed**2 + rig.mass * rig.gravity * height)
+    radial, radial_speed, tangential, tangential_speed = (
+        column[-1] for column in trajectory.slides
+    )
+    along = np.array([math.sin(angle), -math.cos(angle)])
+    across = np.array([math.cos(angle), math.sin(angle)])
+    velocity = (radial_speed - tangential * speed) * along
+    velocity = velocity + (tangential_speed + radial * speed) * across
+    place = radial * along + tangential * across
+    reach = math.hypot(*rig.lowest_place)
+    kinetic = 0.5 * rig.wheel.inertia * speed**2 + 0.5 * rig.mass * float(velocity @ velocity)
+    return float(kinetic + rig.mass * rig.gravity * (reach + place[1]))
+
+
+def case_of(rig: Rig) -> Case:
+    """A rig that pumps for energy."""
+    return Case(rig, Pump(duration=1.0, start_angle=1.0), "energy")
 
 
 Motion = tuple[Rig, Pump, Trajectory, Objective]
@@ -166,20 +242,27 @@ Motion = tuple[Rig, Pump, Trajectory, Objective]
 def pump_motion(simulation: Simulation, arcs=None) -> Motion:
     """What was simulated, as the answer to the task of pumping like this."""
     rig, trajectory = simulation.rig, simulation.trajectory(arcs)
+    return rig, *pump_task(trajectory, rig)
+
+
+def pump_task(trajectory: Trajectory, rig: Rig, start_speed: float | None = None):
     task = Pump(
         duration=trajectory.duration,
         start_angle=trajectory.angle[0],
-        start_speed=trajectory.speed[0],
+        start_speed=trajectory.speed[0] if start_speed is None else start_speed,
         start_radial=trajectory.radial[0],
+        start_tangential=trajectory.tangential[0],
     )
-    return rig, task, trajectory, Objective("energy", end_energy(rig, trajectory), "J")
+    if rig.wheel.unbalance == 0.0:
+        return task, trajectory, Objective("energy", end_energy(rig, trajectory), "J")
+    return task, trajectory, Objective("energy", float(trajectory.energy[-1]), "J")
 
 
 @cache
 def pumping() -> Motion:
     """One stroke in and one out, with rests on both stops, in two arcs."""
     simulation = Simulation(example_rig(), [1.0, 0.0, 0.4, 0.0])
-    simulation.run(lambda _: 0.0, 0.5, rests=True, direction=-1.0)
+    simulation.run(nothing, 0.5, rests=True, direction=-1.0)
     simulation.stroke(0.2)
     middle = simulation.breaks[-1]
     simulation.run(lambda _: -36.0, 0.15, rests=True)
@@ -188,46 +271,16 @@ def pumping() -> Motion:
     return pump_motion(simulation, [0, middle, simulation.breaks[-1]])
 
 
-def told_speeds(rig: Rig, state: list[float], moves: list[tuple[float, float]]) -> Motion:
-    """A motion in which the mass moves as told: (duration, slide speed), or (0, new position).
-
-    Integrated in the momentum form, so that it shares no equation with the replay.
-    """
-    constants = Constants.of(rig)
-    angle, speed, radial = state
-    now = [angle, speed * (rig.wheel.inertia + rig.mass * radial**2), radial]
-    time, nodes, breaks = [0.0], [[*now, 0.0]], [0]
-    for duration, told in moves:
-        if duration == 0.0:
-            now = [now[0], now[1], told]
-            time.append(time[-1])
-            nodes.append([*now, 0.0])
-            breaks.append(len(time) - 1)
-            continue
-
-        def rates(_, y, pace=told):
-            turning = wheel_speed(constants, y[1], y[2])
-            way = np.sign(turning)
-            return [turning, momentum_rate(math, constants, y[0], turning, y[2], way), pace]
-
-        found = solve_ivp(
-            rates, (0.0, duration), now, rtol=1e-11, atol=1e-12, method="DOP853", dense_output=True
-        )
-        edges = np.linspace(0.0, duration, math.ceil(duration / STEP) + 1)
-        begin = time[-1]
-        for left, right in pairwise(edges):
-            for at in left + (right - left) * PLACES:
-                time.append(begin + at)
-                nodes.append([*found.sol(at), told])
-            breaks.append(len(time) - 1)
-        now = found.y[:, -1].tolist()
-    columns = np.array(nodes).T
-    arcs = [0, breaks[-1]]
-    trajectory = trajectory_of(rig, time, *columns, np.zeros(len(time)), breaks, arcs)
-    task = Pump(
-        duration=trajectory.duration,
-        start_angle=angle,
-        start_speed=speed,
-        start_radial=radial,
-    )
-    return rig, task, trajectory, Objective("energy", end_energy(rig, trajectory), "J")
+@cache
+def weaving() -> Motion:
+    """Both slides at work, with everything on that rubs: off one stop, braked, off the other."""
+    simulation = Simulation(two_axes(), [0.6, 3.0, 0.4, 0.0, 0.1, 0.0], step=0.01)
+    aside = {"across": lambda _: 45.0}
+    simulation.run(lambda _: 5.0, 0.1, rests=(True, True), **aside)
+    seated = {"rests": (False, True), "ways": (-1, 0)} | aside
+    simulation.run(lambda _: -58.0, 1.0, until=lambda s: s[2] - 0.33, **seated)
+    middle = simulation.breaks[-1]
+    simulation.run(lambda _: 30.0, 1.0, until=lambda s: s[3], **seated)
+    simulation.state[3] = 0.0
+    simulation.run(lambda _: 20.0, 0.05, across=lambda _: -48.0, ways=(1, -1))
+    return pump_motion(simulation, [0, middle, simulation.breaks[-1]])

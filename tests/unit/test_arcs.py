@@ -13,7 +13,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 from posed_programs import rig_on
 
-from rotorpump.laws.lead import Leads, run_leads
+from rotorpump.laws.lead import Leads, Plan, run_leads
 from rotorpump.laws.trials import try_spin_up
 from rotorpump.solving.seeds import guess_of, seed_of
 from rotorpump.tasks import SpinUp
@@ -25,7 +25,7 @@ def motion(angle, rate, duration, points=400):
     """A motion with the given angle and its rate as functions of time; the inertia is one."""
     time = np.linspace(0.0, duration, points)
     held = np.full_like(time, 0.4)
-    return Guess(time, angle(time), rate(time), held, np.zeros_like(time))
+    return Guess(time, angle(time), rate(time), rate(time), held, *np.zeros((3, points)))
 
 
 def swing(amplitude, duration, points=400):
@@ -40,13 +40,14 @@ def rotation(start, speed, duration):
 
 
 def mirrored(guess: Guess) -> Guess:
-    return replace(guess, angle=-guess.angle, momentum=-guess.momentum)
+    return replace(guess, angle=-guess.angle, momentum=-guess.momentum, speed=-guess.speed)
 
 
 def simulated(angle=0.5, duration=5.0, leads=(0.5, 0.5)) -> Guess:
     steps = round(duration / 0.004)
     rig = rig_on(2)
-    return guess_of(run_leads(rig, (angle, 0.0, 0.4, 0.0), Leads(*leads), 0.004, steps))
+    start = (angle, 0.0, 0.4, 0.0, 0.0, 0.0)
+    return guess_of(rig, run_leads(rig, start, Plan(Leads(*leads), 0.004), steps))
 
 
 def test_letters():
@@ -109,7 +110,7 @@ def test_sample_on_an_event_counts_once():
     angle = np.array([1.0, 0.0, -1.0, -1.5, -1.0, -0.2])
     momentum = np.array([-0.5, -1.0, -0.7, 0.0, 0.6, 0.9])
     still = np.zeros_like(time)
-    chain, ends = cut_into_arcs(Guess(time, angle, momentum, still, still))
+    chain, ends = cut_into_arcs(Guess(time, angle, momentum, momentum, *[still] * 4))
     assert signature(chain) == "bse"
     assert ends == pytest.approx([1.0, 3.0, 5.0])
     assert [arc.direction for arc in chain] == [-1, -1, 1]
@@ -128,7 +129,8 @@ def test_event_at_the_very_end_is_the_end():
 
 
 def test_motionless_guess_is_one_free_arc():
-    still = Guess(np.array([0.0, 1.0]), *(np.full(2, value) for value in (0.5, 0.0, 0.4, 0.0)))
+    values = (0.5, 0.0, 0.0, 0.4, 0.0, 0.0, 0.0)
+    still = Guess(np.array([0.0, 1.0]), *(np.full(2, value) for value in values))
     assert signature(cut_into_arcs(still)[0]) == "e"
 
 
@@ -180,9 +182,10 @@ def test_full_turn_passes_the_top_once(angle, leads):
     # A sampled run ends a fraction of a step beyond the top. That passage is the end of the last
     # arc; it must not make an arc of its own, from the top to the top.
     task = SpinUp(start_angle=angle, full_turn=True)
-    trial = try_spin_up(rig_on(2), task, Leads(*leads))
+    rig = rig_on(2)
+    trial = try_spin_up(rig, task, Leads(*leads))
     assert trial.reached
-    seed = seed_of(task, guess_of(trial.run))
+    seed = seed_of(task, guess_of(rig, trial.run))
     assert seed.word.count("t") == 1
     assert seed.chain[-1].end == "angle"
     assert abs(seed.chain[-1].angle) == pytest.approx(math.pi)

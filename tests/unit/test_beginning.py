@@ -4,6 +4,7 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 import pytest
 
@@ -89,3 +90,26 @@ def test_the_speed_goal_counts_in_either_direction(speed):
 def test_a_full_turn_must_not_begin_past_the_top(side):
     task = SpinUp(full_turn=True, start_angle=side * math.pi, start_speed=side * 0.1)
     assert refusal(task).field == "full_turn"
+
+
+@pytest.mark.parametrize(
+    "changes",
+    [
+        {"tangential": 0.05},
+        {"radial": 0.3, "tangential": Slide(stroke=(-0.1, 0.1))},
+        {"wheel": Wheel(inertia=0.2, unbalance=0.1, unbalance_angle=1.0)},
+    ],
+)
+def test_a_rig_that_is_not_balanced_can_begin_hanging_at_rest(changes):
+    check_beginning(replace(RIG, **changes), SpinUp(full_turn=True, start_angle=0.0))
+
+
+def test_the_energy_goal_counts_the_place_of_the_mass():
+    # ½ I ω² + m g (hypot(0.3, 0.1) - ρ cos φ + τ sin φ) above the lowest place, by hand.
+    rig = replace(RIG, tangential=Slide(stroke=(-0.1, 0.1)))
+    start = {"start_angle": 0.5, "start_speed": 2.0, "start_tangential": 0.08}
+    height = math.hypot(0.3, 0.1) - 0.3 * math.cos(0.5) + 0.08 * math.sin(0.5)
+    present = 0.5 * (0.2 + 1.5 * (0.3**2 + 0.08**2)) * 4.0 + 15.0 * height
+    check_beginning(rig, SpinUp(energy=present * (1.0 + 1e-9), **start))
+    with pytest.raises(InputError, match=f"{present:.6g} J"):
+        check_beginning(rig, SpinUp(energy=present * (1.0 - 1e-9), **start))

@@ -6,10 +6,12 @@ from __future__ import annotations
 import casadi
 import numpy as np
 import pytest
-from posed_programs import random_variables, swing_program, turn_program
+from posed_programs import full_program, random_variables, swing_program, turn_program
 
 from rotorpump.transcription.blocks import Block, Kernel, assemble
-from rotorpump.transcription.mesh import INNER, OUTER
+from rotorpump.transcription.form import ANGLE
+from rotorpump.transcription.mesh import HIGH, LOW
+from rotorpump.transcription.path import RATE_LIMITED
 from rotorpump.transcription.problem import Goal
 from rotorpump.transcription.program import Program
 
@@ -18,13 +20,18 @@ CLOSE = 1e-9
 PROGRAMS = {
     **{f"swing, rung {rung}": lambda rung=rung: swing_program(rung) for rung in range(3)},
     "swing, relaxed": lambda: swing_program(relaxed=True, flexible=False),
-    "swing, rests": lambda: swing_program(rests={0: OUTER, 3: INNER}),
+    "swing, rests": lambda: swing_program(rests={0: HIGH, 3: LOW}),
     "swing, degree 1": lambda: swing_program(degree=1),
     "swing, energy": lambda: swing_program(goal=Goal("energy", 1.0)),
     "swing, speed": lambda: swing_program(1, goal=Goal("speed", 1.0), horizon=1.5),
     **{f"turn, rung {rung}": lambda rung=rung: turn_program(rung) for rung in range(3)},
     "turn, relaxed": lambda: turn_program(relaxed=True),
     "turn, one interval": lambda: turn_program(intervals=1),
+    "full swing": full_program,
+    "full swing, rated": lambda: full_program(RATE_LIMITED),
+    "full swing, relaxed": lambda: full_program(relaxed=True),
+    "full turn": lambda: full_program(independent=ANGLE),
+    "full turn, rated": lambda: full_program(RATE_LIMITED, independent=ANGLE),
     "turn, not closed": lambda: turn_program(intervals=1, closed_momentum=False),
 }
 

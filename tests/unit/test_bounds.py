@@ -13,7 +13,7 @@ from posed_programs import rig_on, swing_program, turn_program
 from rotorpump.rig.slide import Slide
 from rotorpump.solving.routes import find_rests
 from rotorpump.transcription.bounds import Bounds
-from rotorpump.transcription.mesh import FREE, INNER, OUTER
+from rotorpump.transcription.mesh import FREE, HIGH, LOW
 from rotorpump.transcription.problem import Goal, Start
 from rotorpump.transcription.program import FLEXIBILITY, Program
 
@@ -32,7 +32,8 @@ def row_ranges(program: Program) -> dict[str, tuple[np.ndarray, np.ndarray]]:
         np.split(side[:count].reshape(program.mesh.intervals, -1), cuts, axis=1)
         for side in (bounds.lower, bounds.upper)
     )
-    return dict(zip(rows, zip(lower, upper, strict=True), strict=True))
+    names = [name.removeprefix("radial ") for name in rows]
+    return dict(zip(names, zip(lower, upper, strict=True), strict=True))
 
 
 def length_ranges(program: Program) -> tuple[np.ndarray, np.ndarray]:
@@ -54,11 +55,12 @@ def test_limits_and_clip():
 @pytest.mark.parametrize("rung", [0, 1, 2])
 def test_start_is_given(rung):
     program = swing_program(rung)
-    start = Start(0.7, -0.4, 0.3, 0.1)
+    start = Start(0.7, -0.4, 0.3)
     program = replace(program, problem=replace(program.problem, start=start))
     node, scales = program.layout.node[0], program.scales
+    # the slide is at rest
     expected = [0.0, 0.7, -0.4 / scales.momentum]
-    expected += [scales.scale_slide(0, 0.3), scales.scale_slide(1, 0.1)][:rung]
+    expected += [scales.radial.scaled(0, 0.3), 0.0][:rung]
     for place, value in zip(node, expected, strict=True):
         assert variable_range(program, place) == pytest.approx((value, value))
 
@@ -70,10 +72,12 @@ def test_start_near_its_stop_stays_where_it_is():
     program = replace(program, problem=replace(program.problem, start=start))
     z = np.zeros(program.layout.variables)
     z[program.layout.node[:, 3]] = 1.0
-    rests = find_rests(program, program.variable_bounds.clip(z))
-    assert np.all(rests[1:] == OUTER)
-    program = replace(program, mesh=program.mesh.with_rests(rests, flexible=True))
-    scaled = program.scales.scale_slide(0, start.radial)
+    rests = find_rests(program, program.variable_bounds.clip(z), 0)
+    assert np.all(rests[1:] == HIGH)
+    program = replace(
+        program, mesh=program.mesh.with_pattern(rests[None], rests[None], flexible=True)
+    )
+    scaled = program.scales.radial.scaled(0, start.radial)
     assert variable_range(program, program.layout.node[0, 3]) == pytest.approx((scaled, scaled))
 
 
@@ -89,7 +93,7 @@ def test_time_runs_on_and_ends_at_the_horizon():
 
 def test_momentum_has_the_sign_of_its_arc():
     program = swing_program(per_arc=2)
-    _, momentum = program.layout.collocated(program.problem.form)
+    _, momentum = program.layout.collocated
     inner = momentum[:, 1:-1]
     for k, direction in enumerate([-1, -1, -1, -1, 1, 1]):
         assert program.directions[k] == direction
@@ -123,8 +127,8 @@ def test_turn_begins_below_and_ends_a_turn_later():
 @pytest.mark.parametrize("rung", [0, 1, 2])
 def test_stroke_and_speed_limit(rung):
     program = swing_program(rung)
-    values = [*program.layout.node[1, 3:], program.layout.controls[1, 0]]
-    top = 0.8 / program.scales.speed
+    values = [*program.layout.node[1, 3:], program.layout.controls(0)[1, 0]]
+    top = 0.8 / program.scales.radial.speed
     limits = [(0.0, 1.0), (-top, top), (-math.inf, math.inf)]
     for place, expected in zip(values, limits, strict=False):
         assert variable_range(program, place) == pytest.approx(expected)
@@ -142,26 +146,25 @@ def test_no_speed_limit():
 
 
 def test_resting_mass_is_held_on_its_stop():
-    program = swing_program(rests={0: OUTER, 3: INNER})
+    program = swing_program(rests={0: HIGH, 3: LOW})
     for interval, seat in ((0, 1.0), (3, 0.0)):
         for node in program.layout.node[interval : interval + 2]:
             assert variable_range(program, node[3]) == (seat, seat)
             assert variable_range(program, node[4]) == (0.0, 0.0)
-        for place in program.layout.controls[interval]:
+        for place in program.layout.controls(0)[interval]:
             assert variable_range(program, place) == (0.0, 0.0)
-    free = program.layout.controls[1]
+    free = program.layout.controls(0)[1]
     assert variable_range(program, free[0]) == (-math.inf, math.inf)
 
 
 def test_rows_of_free_intervals():
-    program = swing_program(rests={0: OUTER, 3: INNER})
+    program = swing_program(rests={0: HIGH, 3: LOW})
     ranges = row_ranges(program)
-    moving = np.flatnonzero(program.mesh.rests == FREE)
-    top = 0.8 / program.scales.speed
+    moving = np.flatnonzero(program.mesh.rests[0] == FREE)
+    top = 0.8 / program.scales.radial.speed
     expected = {
         "wheel": (0.0, 0.0),
         "path": (0.0, 0.0),
-        "stroke": (0.0, 1.0),
         "speed": (-top, top),
         "force": (-1.0, 1.0),
     }
@@ -172,8 +175,20 @@ def test_rows_of_free_intervals():
         assert upper[moving] == pytest.approx(high)
 
 
+def test_the_stroke_holds_but_where_the_mass_is_seated_anyway():
+    program = swing_program(rests={0: HIGH, 3: LOW})
+    lower, upper = row_ranges(program)["stroke"]
+    # rows of the start and of the end of an interval; beside a rest, place and speed are given
+    held = np.array([[0, 0], [0, 1], [1, 0], [0, 0], [0, 1], [1, 1]], dtype=bool)
+    assert np.array_equal(lower, np.where(held, 0.0, -np.inf))
+    assert np.array_equal(upper, np.where(held, 1.0, np.inf))
+    # and a motion begins at rest
+    lower, _ = row_ranges(swing_program())["stroke"]
+    assert np.array_equal(lower[:2], [[-np.inf, 0.0], [0.0, 0.0]])
+
+
 def test_rows_of_resting_intervals():
-    program = swing_program(rests={0: OUTER, 3: INNER})
+    program = swing_program(rests={0: HIGH, 3: LOW})
     ranges = row_ranges(program)
     for interval, force in ((0, (-np.inf, 1.0)), (3, (-1.0, np.inf))):
         lower, upper = (side[interval] for side in ranges["force"])
@@ -188,7 +203,7 @@ def test_rows_of_resting_intervals():
 
 def test_rows_of_relaxed_stops_are_one_sided():
     ranges = row_ranges(swing_program(relaxed=True, flexible=False))
-    for name in ("force", "arrival"):
+    for name in ("stops", "arrival"):
         lower, upper = ranges[name]
         assert lower.shape[1] > 0
         assert np.all(lower == -np.inf)

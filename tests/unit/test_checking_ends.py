@@ -8,8 +8,11 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from simulated_motion import Simulation, example_rig, pumping, told_speeds
+from simulated_motion import Simulation, example_rig, nothing, pumping
+from told_motion import told_speeds
 
+from rotorpump.checking.case import Case
+from rotorpump.checking.claim import claim_check
 from rotorpump.checking.ends import end_checks
 from rotorpump.checking.report import check_motion
 from rotorpump.errors import InputError
@@ -22,18 +25,23 @@ from rotorpump.tasks import Rotate, SpinUp
 START = {"start_angle": 1.0}
 
 
+def checks_of(rig, task, trajectory, claimed):
+    case = Case(rig, task, claimed.name)
+    return (*end_checks(case, trajectory), claim_check(case, trajectory, claimed))
+
+
 def failures(rig, task, trajectory, claimed):
-    return {check.name for check in end_checks(rig, task, trajectory, claimed) if not check.passed}
+    return {check.name for check in checks_of(rig, task, trajectory, claimed) if not check.passed}
 
 
 def in_time(trajectory):
     return Objective("time", trajectory.duration, "s")
 
 
-def rotating(friction=0.0):
-    rig = example_rig(friction=AxleFriction(friction))
-    simulation = Simulation(rig, [-math.pi, 8.0, 0.4, 0.0])
-    simulation.run(lambda _: 0.0, 3.0, until=lambda s: s[0] - math.pi, rests=True)
+def rotating(friction=0.0, way=1, rig=None, load_torque=0.0):
+    rig = rig or example_rig(friction=AxleFriction(friction))
+    simulation = Simulation(rig, [-way * math.pi, way * 8.0, 0.4, 0.0], load_torque)
+    simulation.run(nothing, 3.0, until=lambda s: s[0] - way * math.pi, rests=True)
     trajectory = simulation.trajectory()
     return rig, trajectory, Objective("speed", 2.0 * math.pi / trajectory.duration, "rad/s")
 
@@ -82,14 +90,14 @@ def test_a_start_in_motion_is_noticed():
     slide_speed = trajectory.radial_speed.copy()
     slide_speed[0] = 0.01
     spoiled = replace(trajectory, radial_speed=slide_speed)
-    assert failures(rig, task, spoiled, claimed) == {"start at rest"}
+    assert failures(rig, task, spoiled, claimed) == {"start radial speed"}
 
 
 def test_without_a_force_limit_the_slide_need_not_start_at_rest():
     rig = example_rig(radial=Slide(stroke=(0.2, 0.4), speed=0.8))
     _, task, trajectory, claimed = told_speeds(rig, [1.0, -0.5, 0.4], [(0.2, -0.8)])
-    checks = end_checks(rig, task, trajectory, claimed)
-    assert "start at rest" not in {check.name for check in checks}
+    checks = checks_of(rig, task, trajectory, claimed)
+    assert "start radial speed" not in {check.name for check in checks}
     assert all(check.passed for check in checks)
 
 
@@ -103,7 +111,16 @@ def test_a_wrong_claim_is_noticed(wrong):
 def test_a_claim_of_another_kind_is_refused():
     rig, task, trajectory, claimed = pumping()
     with pytest.raises(InputError, match="objective"):
-        end_checks(rig, task, trajectory, replace(claimed, name="time"))
+        checks_of(rig, task, trajectory, replace(claimed, name="time"))
+
+
+@pytest.mark.parametrize(("name", "unit"), [("momentum", "kg m2/s"), ("speed", "rad/s")])
+def test_other_objectives_of_pumping(name, unit):
+    rig, task, trajectory, _ = pumping()
+    value = abs(float(getattr(trajectory, name)[-1]))
+    assert failures(rig, task, trajectory, Objective(name, value, unit)) == set()
+    boast = Objective(name, 1.00001 * value, unit)
+    assert failures(rig, task, trajectory, boast) == {"claimed objective"}
 
 
 class TestSpinUp:
@@ -125,6 +142,13 @@ class TestSpinUp:
         task = SpinUp(**START, energy=energy.value)
         claimed = Objective("time", 0.999 * trajectory.duration, "s")
         assert failures(rig, task, trajectory, claimed) == {"claimed objective"}
+
+    def test_a_deadline_that_is_missed_is_noticed(self):
+        rig, _, trajectory, energy = pumping()
+        task = SpinUp(**START, energy=energy.value, deadline=trajectory.duration)
+        assert failures(rig, task, trajectory, in_time(trajectory)) == set()
+        early = replace(task, deadline=0.999 * trajectory.duration)
+        assert failures(rig, early, trajectory, in_time(trajectory)) == {"deadline"}
 
     def test_wrong_start_is_noticed(self):
         rig, _, trajectory, energy = pumping()
@@ -181,6 +205,38 @@ class TestRotate:
             momentum=-trajectory.momentum,
         )
         assert failures(rig, Rotate(), spoiled, claimed) == {"one turn"}
+
+    def test_a_turn_in_the_direction_that_is_asked_for(self):
+        rig, trajectory, claimed = rotating(way=-1)
+        task = Rotate(direction=-1)
+        assert all(check.passed for check in check_motion(rig, task, trajectory, claimed))
+        assert failures(rig, Rotate(), trajectory, claimed) == {"one turn"}
+
+    def test_a_mean_speed_that_is_asked_for(self):
+        rig, trajectory, speed = rotating()
+        cost = Objective("work", 0.0, "J")
+        task = Rotate(mean_speed=speed.value)
+        assert failures(rig, task, trajectory, cost) == set()
+        faster = Rotate(mean_speed=1.00001 * speed.value)
+        assert failures(rig, faster, trajectory, cost) == {"mean speed"}
+
+    def test_a_load_takes_power_and_slows_the_wheel(self):
+        rig, trajectory, speed = rotating(load_torque=0.2)
+        power = Objective("load power", 0.2 * speed.value, "W")
+        loaded = check_motion(rig, Rotate(load_torque=0.2), trajectory, power)
+        # nothing drives it, so it is no steady rotation; all else is right
+        assert {c.name for c in loaded if not c.passed} == {"periodic momentum"}
+        lighter = check_motion(rig, Rotate(load_torque=0.19), trajectory, power)
+        failed = {check.name for check in lighter if not check.passed}
+        assert {"energy audit", "replay speed", "claimed objective"} <= failed
+
+    def test_a_force_whose_rate_is_limited_is_periodic(self):
+        rig, trajectory, claimed = rotating()
+        limited = replace(rig, radial=replace(rig.radial, force_rate=1e3))
+        assert failures(limited, Rotate(), trajectory, claimed) == set()
+        ramp = 5.0 * trajectory.time
+        spoiled = replace(trajectory, radial_force=trajectory.radial_force + ramp)
+        assert failures(limited, Rotate(), spoiled, claimed) == {"periodic radial force"}
 
     def test_a_wrong_mean_speed_is_noticed(self):
         rig, trajectory, claimed = rotating()

@@ -55,7 +55,7 @@ BAD_RIGS = {
     ),
     "reversed stroke": (
         TEXT.replace("[0.20, 0.40]", "[0.40, 0.20]"),
-        ("[radial]", "stroke", "must satisfy 0 <= lo < hi", "[0.4, 0.2]"),
+        ("[radial]", "stroke", "must satisfy lo < hi", "[0.4, 0.2]"),
     ),
     "missing key": (
         TEXT.replace("inertia = 0.25", ""),
@@ -118,7 +118,8 @@ def test_a_bad_rig_is_refused_in_one_line(place, answers, capsys, command, case)
         (["--accuracy", "0"], "--accuracy: must be greater than 0; received 0.0"),
         (["--accuracy", "nan"], "--accuracy: must be finite; received nan"),
         (["--accuracy=-1e-4"], "--accuracy: must be greater than 0; received -0.0001"),
-        (["--objective", "time"], "objective: must be one of 'energy'; received 'time'"),
+        (["--objective", "time"], "objective: must be one of 'energy', 'momentum', 'speed'; rec"),
+        (["--objective", "heat"], "objective: must be one of 'energy', 'momentum', 'speed'; rec"),
         (["--out", "file"], "--out: must be a folder, and no part of its path a file"),
         (["--out", "file/below"], "--out: must be a folder, and no part of its path a file"),
         (["--out", ""], "--out: must be a path; received ''"),

@@ -13,6 +13,7 @@ from posed_programs import rig_on
 
 from rotorpump.laws.lead import Leads
 from rotorpump.laws.trials import try_pump
+from rotorpump.measures import measure
 from rotorpump.solution.status import Status
 from rotorpump.solving import ipopt
 from rotorpump.solving.assignment import assign
@@ -55,9 +56,9 @@ WORDS = {
 @pytest.fixture(scope="module")
 def posed():
     """A small program and a start: pumping for a little more than a swing, three arcs."""
-    seed = seed_of(TASK, guess_of(try_pump(RIG, TASK, Leads(0.5, 0.5)).run))
-    problem = assign(RIG, TASK, seed)
-    program = Program(problem, Mesh.uniform(len(problem.chain), 4, flexible=True))
+    seed = seed_of(TASK, guess_of(RIG, try_pump(RIG, TASK, Leads(0.5, 0.5)).run))
+    problem = assign(RIG, TASK, measure(TASK), seed)
+    program = Program(problem, Mesh.uniform(len(problem.chain), 4, 1, flexible=True))
     return program, program.start_from(seed.guess, seed.ends)
 
 

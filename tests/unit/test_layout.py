@@ -8,10 +8,19 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from rotorpump.transcription.interval import ANGLE, TIME, WHEEL, Form
+from rotorpump.transcription.form import ANGLE, TIME, AxisForm, Form
 from rotorpump.transcription.layout import Layout
 
-FORMS = st.builds(Form, st.sampled_from([TIME, ANGLE]), st.integers(0, 2), st.integers(1, 5))
+AXES = st.builds(AxisForm, st.just("radial"), st.integers(0, 3)).flatmap(
+    lambda radial: st.sampled_from([(radial,), (radial, AxisForm("tangential", 2))])
+)
+FORMS = st.builds(
+    Form,
+    st.sampled_from([TIME, ANGLE]),
+    AXES,
+    st.integers(1, 5),
+    sums=st.sampled_from([(), ("work",), ("heat", "radial_square")]),
+)
 
 
 @given(FORMS, st.integers(1, 5))
@@ -35,23 +44,36 @@ def test_periodic_motion_shares_its_ends(form, intervals, own):
 @given(FORMS, st.integers(1, 5))
 def test_kernel_takes_both_nodes_and_the_inner_variables(form, intervals):
     layout = Layout.of(form, intervals)
-    width = 2 * form.node + form.inner
+    width = 2 * len(form.node) + form.inner
     assert layout.places.shape == (intervals, width)
     for k in range(intervals):
         expected = [*layout.node[k], *layout.node[k + 1], *layout.inner[k]]
         assert layout.places[k].tolist() == expected
 
 
-@pytest.mark.parametrize(("independent", "which"), [(TIME, 1), (ANGLE, 0)])
+@pytest.mark.parametrize(("independent", "leading"), [(TIME, "angle"), (ANGLE, "time")])
 @pytest.mark.parametrize("degree", [1, 3])
-def test_collocated_quantities_run_from_node_to_node(independent, which, degree):
-    form = Form(independent, 2, degree)
+def test_collocated_quantities_run_from_node_to_node(independent, leading, degree):
+    form = Form(independent, (AxisForm("radial", 2),), degree)
     layout = Layout.of(form, 4)
-    first, momentum = layout.collocated(form)
-    for places, column in ((first, which), (momentum, WHEEL - 1)):
+    for places, name in zip(layout.collocated, (leading, "momentum"), strict=True):
         assert places.shape == (4, degree + 1)
-        assert places[:, 0].tolist() == layout.node[:-1, column].tolist()
-        assert places[:, -1].tolist() == layout.node[1:, column].tolist()
-    used = np.concatenate([first[:, 1:-1].ravel(), momentum[:, 1:-1].ravel()])
-    free = np.setdiff1d(layout.inner.ravel(), layout.controls.ravel())
+        assert places[:, 0].tolist() == layout.nodes(name)[:-1].tolist()
+        assert places[:, -1].tolist() == layout.nodes(name)[1:].tolist()
+    used = np.concatenate([places[:, 1:-1].ravel() for places in layout.collocated])
+    free = np.setdiff1d(layout.inner.ravel(), layout.controls(0).ravel())
     assert sorted(used.tolist()) == free.tolist()
+
+
+@given(FORMS)
+def test_inner_variables_are_collocated_values_controls_and_slacks(form):
+    layout = Layout.of(form, 2)
+    controls = [layout.controls(k) for k in range(len(form.axes))]
+    inner = [places[:, 1:-1] for places in layout.collocated]
+    everything = [part.ravel() for part in (*inner, *controls, layout.slacks)]
+    assert sorted(np.concatenate(everything).tolist()) == sorted(layout.inner.ravel().tolist())
+
+
+def test_a_periodic_motion_shares_all_but_time_angle_and_sums():
+    form = Form(ANGLE, (AxisForm("radial", 2),), sums=("work",))
+    assert form.node[: form.index("momentum")] == ("time", "angle", "work")

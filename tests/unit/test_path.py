@@ -14,6 +14,7 @@ from rotorpump.rig.slide import Slide
 from rotorpump.transcription.path import (
     FORCE_LIMITED,
     INSTANT,
+    RATE_LIMITED,
     SPEED_LIMITED,
     SlidePath,
     rung_of,
@@ -30,16 +31,17 @@ PATHS = st.builds(
 
 
 @pytest.mark.parametrize(
-    ("limits", "rung"),
+    ("limits", "forced", "rung"),
     [
-        ({}, INSTANT),
-        ({"speed": 1.0}, SPEED_LIMITED),
-        ({"force": 10.0}, FORCE_LIMITED),
-        ({"speed": 1.0, "force": 10.0}, FORCE_LIMITED),
+        ({}, False, INSTANT),
+        ({"speed": 1.0}, False, SPEED_LIMITED),
+        ({"speed": 1.0}, True, FORCE_LIMITED),
+        ({"force": 10.0}, True, FORCE_LIMITED),
+        ({"force": 10.0, "force_rate": 100.0}, True, RATE_LIMITED),
     ],
 )
-def test_limits_decide_the_rung(limits, rung):
-    assert rung_of(Slide(stroke=(0.2, 0.4), **limits)) == rung
+def test_limits_decide_the_rung(limits, forced, rung):
+    assert rung_of(Slide(stroke=(0.2, 0.4), **limits), forced=forced) == rung
 
 
 def test_instant_path_by_hand():

@@ -14,6 +14,7 @@ from matplotlib.figure import Figure
 from simulated_motion import example_rig
 
 from rotorpump.errors import InputError
+from rotorpump.physics.state import Slides
 from rotorpump.plotting.compare import plot_comparison
 from rotorpump.plotting.look import curves
 from rotorpump.plotting.motion import emphasis, plot_motion
@@ -56,9 +57,8 @@ def test_curves_show_both_sides_of_a_jump():
         [0.0, 0.5, 0.5, 1.0],
         [0.3] * 4,
         [0.0] * 4,
-        [0.4, 0.4, 0.2, 0.2],
-        [0.0] * 4,
-        [0.0] * 4,
+        Slides(np.array([0.4, 0.4, 0.2, 0.2])),
+        (0.0, 0.0),
         [0, 1, 2, 3],
         [0, 3],
     )
@@ -220,8 +220,7 @@ def test_at_most_one_turn_is_emphasised():
 
 def test_a_motion_without_duration_can_be_drawn():
     rig = example_rig()
-    still = [0.0, 0.0]
-    point = trajectory_of(rig, still, [0.3, 0.3], still, [0.4, 0.4], still, still, [0, 1], [0, 1])
+    point = trajectory_of(rig, [0.0, 0.0], 0.3, 0.0, Slides(0.4), (0.0, 0.0), [0, 1], [0, 1])
     solution = made_solution(trajectory=point)
     plot_motion(solution)
     plot_profiles(solution)

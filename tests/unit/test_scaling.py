@@ -14,6 +14,7 @@ from rotorpump.rig.slide import Slide
 from rotorpump.transcription.scaling import Scales
 
 SCALES = Scales.of(rig_on(2))
+RADIAL = SCALES.radial
 
 
 def test_scales_are_those_of_a_small_swing():
@@ -23,31 +24,40 @@ def test_scales_are_those_of_a_small_swing():
     assert SCALES.momentum == pytest.approx(inertia / SCALES.time)
     # twice the kinetic energy at one radian per time scale
     assert SCALES.energy == pytest.approx(inertia / SCALES.time**2)
-    assert (SCALES.origin, SCALES.length) == pytest.approx((0.2, 0.2))
+    assert (RADIAL.origin, RADIAL.length) == pytest.approx((0.2, 0.2))
 
 
 def test_limits_are_the_scales_where_they_are_low():
-    slow = Scales.of(rig_on(2, radial=Slide(stroke=(0.2, 0.4), speed=0.1, force=3.0)))
-    assert (slow.speed, slow.acceleration) == pytest.approx((0.1, 3.0 / 1.2))
+    slow = Scales.of(rig_on(2, radial=Slide(stroke=(0.2, 0.4), speed=0.1, force=3.0))).radial
+    assert slow[2:] == pytest.approx((0.1, 3.0 / 1.2, 3.0))
+
+
+def test_the_motor_line_is_a_limit_as_well():
+    line = Slide(stroke=(0.2, 0.4), stall_force=3.0, no_load_speed=0.1)
+    assert Scales.of(rig_on(2, radial=line)).radial[2:] == pytest.approx((0.1, 3.0 / 1.2, 3.0))
+
+
+def test_flat_scales_come_back():
+    assert Scales.from_flat(SCALES.flat) == SCALES
 
 
 @pytest.mark.parametrize("rung", [0, 1, 2])
 def test_scales_are_finite_without_limits(rung):
     scales = Scales.of(rig_on(rung))
-    assert all(math.isfinite(value) and value > 0.0 for value in scales)
+    assert all(math.isfinite(value) and value > 0.0 for value in scales.radial[1:])
 
 
 @given(st.integers(0, 2), st.floats(-100.0, 100.0))
 def test_scaling_is_undone(order, value):
-    scaled = SCALES.scale_slide(order, value)
-    assert SCALES.slide_value(order, scaled) == pytest.approx(value, rel=1e-12, abs=1e-12)
+    scaled = RADIAL.scaled(order, value)
+    assert RADIAL.value(order, scaled) == pytest.approx(value, rel=1e-12, abs=1e-12)
 
 
 def test_stroke_runs_from_zero_to_one():
-    assert SCALES.scale_slide(0, 0.2) == pytest.approx(0.0)
-    assert SCALES.scale_slide(0, 0.4) == pytest.approx(1.0)
-    assert SCALES.scale_slide(1, SCALES.speed) == pytest.approx(1.0)
-    assert SCALES.scale_slide(2, -SCALES.acceleration) == pytest.approx(-1.0)
+    assert RADIAL.scaled(0, 0.2) == pytest.approx(0.0)
+    assert RADIAL.scaled(0, 0.4) == pytest.approx(1.0)
+    assert RADIAL.scaled(1, RADIAL.speed) == pytest.approx(1.0)
+    assert RADIAL.scaled(2, -RADIAL.acceleration) == pytest.approx(-1.0)
 
 
 def test_units_change_nothing():
@@ -66,5 +76,5 @@ def test_units_change_nothing():
     scales = Scales.of(other)
     assert scales.time == pytest.approx(SCALES.time)
     assert scales.energy == pytest.approx(SCALES.energy * kilogram * metre**2)
-    assert scales.speed == pytest.approx(SCALES.speed * metre)
-    assert scales.acceleration == pytest.approx(SCALES.acceleration * metre)
+    assert scales.radial.speed == pytest.approx(RADIAL.speed * metre)
+    assert scales.radial.acceleration == pytest.approx(RADIAL.acceleration * metre)

@@ -9,9 +9,10 @@ from types import SimpleNamespace
 import pytest
 from posed_programs import rig_on
 
+from rotorpump.measures import measure
 from rotorpump.solution.status import Status
 from rotorpump.solving import search as subject
-from rotorpump.solving.routes import Candidate
+from rotorpump.solving.routes import Candidate, Wanted
 from rotorpump.solving.search import Search
 from rotorpump.tasks import Pump, Rotate, SpinUp
 
@@ -25,7 +26,7 @@ def run(value: float, status: Status = Status.SOLVED, iterations: int = 10) -> C
 
 
 def search_with(*values: float, task=PUMP) -> Search:
-    found = Search(rig_on(), task)
+    found = Search(Wanted(rig_on(), task, measure(task)))
     for value in values:
         found.add(run(value))
     return found
@@ -130,13 +131,13 @@ def test_it_ends_when_the_user_stops_it():
 def test_a_scout_that_claims_clearly_more_is_settled_first(claim, goes_on):
     found = search_with(*[2.0] * subject.LEAST_RUNS[Pump])
     scout = run(2.0 * (1.0 + (claim - 1.0) * subject.PROMISE))
-    found.scouts.append(scout)
+    found.scouts.append((scout, None))
     assert found.finished is not goes_on
-    found.scouts.remove(scout)
+    found.scouts.clear()
     assert found.finished
 
 
 def test_the_iterations_of_scouts_count():
     found = search_with(2.0)
-    found.scouts.append(run(9.0, iterations=subject.MOST_ITERATIONS))
+    found.scouts.append((run(9.0, iterations=subject.MOST_ITERATIONS), None))
     assert found.finished

@@ -36,6 +36,7 @@ def test_json_has_the_keys_that_scripts_rely_on():
         "trajectory",
         "checks",
         "limits",
+        "drives",
         "statistics",
     ]
     assert document["status"] == "SOLVED"
@@ -49,8 +50,18 @@ def test_json_has_the_keys_that_scripts_rely_on():
         {"name": "audit", "value": 3e-2, "tolerance": 1e-3, "passed": False},
     ]
     assert document["limits"] == [
-        {"name": "speed", "value": 0.8, "unit": "m/s", "active_share": 0.25, "price": 1.5},
-        {"name": "force", "value": 40.0, "unit": "N", "active_share": 0.125, "price": None},
+        {"name": "radial speed", "value": 0.8, "unit": "m/s", "active_share": 0.25, "price": 1.5},
+        {"name": "radial force", "value": 40.0, "unit": "N", "active_share": 0.125, "price": None},
+    ]
+    assert document["drives"] == [
+        {
+            "axis": "radial",
+            "peak_force": 40.0,
+            "rms_force": 22.5,
+            "peak_power": 18.0,
+            "work": 9.5,
+            "heat": None,
+        }
     ]
     assert document["statistics"] == {
         "iterations": 95,

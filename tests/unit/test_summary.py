@@ -20,10 +20,13 @@ def test_the_summary_of_a_verified_solution():
     assert "NOT" not in text
     speed, force = (
         next(line for line in text.splitlines() if line.startswith(name))
-        for name in ("speed", "force")
+        for name in ("radial speed", "radial force")
     )
-    assert speed.split() == ["speed", "0.8", "m/s", "25.0", "%", "1.5", "J", "per", "m/s"]
-    assert force.split() == ["force", "40", "N", "12.5", "%", "-"]
+    assert speed.split()[1:] == ["speed", "0.8", "m/s", "25.0", "%", "1.5", "J", "per", "m/s"]
+    assert force.split()[1:] == ["force", "40", "N", "12.5", "%", "-"]
+    drives = text[text.index("drive  ") :].splitlines()
+    assert " ".join(drives[0].split()) == "drive peak force rms force peak power work heat"
+    assert drives[1].split() == ["radial", "40", "N", "22.5", "N", "18", "W", "9.5", "J", "-"]
     assert "95 iterations, 1.2 s, 60 intervals, 3 refinements; 4 starts" in text
     assert text.isascii()
 
@@ -54,7 +57,15 @@ def test_the_summary_of_no_solution():
         ),
         (SpinUp(start_angle=0.3, speed=6.0), "spin up to 6 rad/s from 0.3 rad"),
         (SpinUp(start_angle=-0.3, full_turn=True), "spin up to a full turn from -0.3 rad"),
+        (
+            SpinUp(start_angle=0.3, energy=5.0, deadline=9.0),
+            "spin up to 5 J from 0.3 rad within 9 s",
+        ),
         (Rotate(), "rotate steadily, one turn"),
+        (
+            Rotate(mean_speed=7.0, load_torque=0.2, direction=-1),
+            "rotate steadily, one turn clockwise, at 7 rad/s, against 0.2 N m",
+        ),
     ],
 )
 def test_tasks_in_words(task, words):
