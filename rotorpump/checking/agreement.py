@@ -34,7 +34,8 @@ def replay_checks(
     distance in which the drive alone would have taken away the speed with which the mass arrives
     at one, relative to the stroke, is held against the same tolerance. So is the speed of a mass
     that should rest on a stop: arriving a little early or late, it has a speed there that is of
-    the order of the square root of the deviation in time.
+    the order of the square root of the deviation in time. With two slides, the stop passes that on
+    to the other slide at once, whose speed at such a node is judged alike.
     """
     ends = trajectory.breaks[1:]
     spin = float(np.max(np.abs(trajectory.speed))) or 1.0
@@ -50,9 +51,9 @@ def replay_checks(
         states = replay.states[:, STATES.index(name)]
         deviation = np.abs(states - getattr(trajectory, name)[ends]) / scales[name]
         axis = name.removesuffix("_speed")
-        if axis in case.forced and axis != name and case.rig.slide(axis).bearing:
+        if axis in case.forced and axis != name:
             stopping = _stopping_share(case.rig, trajectory, axis, deviation * scales[name])
-            deviation = np.where(_seated(case.rig, trajectory, axis, ends), stopping, deviation)
+            deviation = np.where(_stopped(case, trajectory, ends), stopping, deviation)
         # argmax finds a value that is not a number first, so such a motion cannot pass
         worst = int(np.argmax(deviation))
         detail = replay.message or f"largest at {trajectory.time[ends[worst]]:.4g} s"
@@ -71,6 +72,17 @@ def slide_pace(rig: Rig, trajectory: Trajectory, axis: str) -> float:
     """Largest slide speed of a motion; one stroke per its duration if the mass never moves."""
     fastest = float(np.max(np.abs(getattr(trajectory, f"{axis}_speed"))))
     return fastest or rig.slide(axis).length / trajectory.duration
+
+
+def _stopped(
+    case: Case, trajectory: Trajectory, nodes: NDArray[np.intp]
+) -> NDArray[np.bool_]:
+    """Whether the mass rests on a stop of any slide at these nodes."""
+    stopped = np.zeros(nodes.size, dtype=bool)
+    for axis in case.forced:
+        if case.rig.slide(axis).bearing:
+            stopped |= _seated(case.rig, trajectory, axis, nodes)
+    return stopped
 
 
 def _seated(

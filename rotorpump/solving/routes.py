@@ -8,6 +8,7 @@ relaxed route first lets a relaxed complementarity find it.
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -35,7 +36,8 @@ PER_HALF_TURN = 16
 """Intervals of the first mesh, in each arc of a motion in time and of a steady rotation."""
 
 RELAXATION = 1e-2
-"""First relaxation of the end stops, as a share of force limit times stroke."""
+TIGHTER = (1e-3, 1e-4)
+"""First relaxation of the end stops, as a share of force limit times stroke, and the next ones."""
 
 SEAT = 2e-3
 CREEP = 2e-2
@@ -118,7 +120,10 @@ def relax(wanted: Wanted, seed: Seed, monitor: Monitor | None, *, finer: float =
 def settle_relaxed(
     wanted: Wanted, relaxed: Candidate, seed: Seed, monitor: Monitor | None
 ) -> Candidate:
-    """Take the resting intervals from a relaxed solution, and solve with these."""
+    """Tighten a relaxed solution, take the resting intervals from it, and solve with these."""
+    relaxed = _tighten(wanted, relaxed, monitor)
+    if relaxed.outcome.status is Status.INTERRUPTED:
+        return relaxed
     program, variables = relaxed.program, relaxed.outcome.variables
     problem = program.problem
     mesh = program.mesh.settled(node_marks(program, variables))
@@ -132,6 +137,26 @@ def settle_relaxed(
         start = strict.start_from(Guess.from_trajectory(relaxed.trajectory), ends)
     settings = Settings(barrier=1e-2, iterations=MOST_ITERATIONS)
     return _settle(wanted, strict, start, settings, monitor, relaxed.iterations)
+
+
+def _tighten(wanted: Wanted, relaxed: Candidate, monitor: Monitor | None) -> Candidate:
+    """Relax the end stops less and less, as long as that solves.
+
+    With one slide, the first relaxation shows the pattern well enough.
+    """
+    if len(relaxed.program.problem.form.axes) == 1:
+        return relaxed
+    settings = Settings(barrier=1e-2, tolerance=1e-4, iterations=RELAXED_ITERATIONS)
+    for relaxation in TIGHTER:
+        program = replace(relaxed.program, relaxation=relaxation)
+        outcome = run_ipopt(program, relaxed.outcome.variables, settings, monitor=monitor)
+        spent = relaxed.iterations + outcome.iterations
+        if not outcome.status.success and outcome.status is not Status.INTERRUPTED:
+            return replace(relaxed, iterations=spent)
+        relaxed = candidate_of(wanted, program, outcome, spent)
+        if outcome.status is Status.INTERRUPTED:
+            break
+    return relaxed
 
 
 def _first_mesh(problem: Problem, *, flexible: bool, finer: float = 1.0) -> Mesh:
@@ -165,7 +190,11 @@ def _settle(
         fresh = candidate_of(wanted, again, outcome, spent)
         if outcome.status is Status.INTERRUPTED:
             return fresh
-        if not fresh.solved or outcome.objective >= best.outcome.objective:
+        if not fresh.solved:
+            return replace(best, iterations=spent)
+        # a mass that floats in front of its stop saves the force that presses it on
+        floats = bool(program.problem.form.sums)
+        if outcome.objective >= best.outcome.objective and not floats:
             return replace(best, iterations=spent)
         best = fresh
     return best
@@ -174,7 +203,10 @@ def _settle(
 def candidate_of(wanted: Wanted, program: Program, outcome: Outcome, iterations: int) -> Candidate:
     """Recover the motion of an outcome."""
     trajectory = recover_trajectory(program, outcome.variables)
-    value = reached_value(wanted.rig, wanted.task, wanted.measure, trajectory)
+    value = math.nan
+    if outcome.status.success or bool(np.all(np.diff(trajectory.time) >= 0.0)):
+        # in what is left of a failed solve, time may run back
+        value = reached_value(wanted.rig, wanted.task, wanted.measure, trajectory)
     return Candidate(program, outcome, trajectory, value, iterations)
 
 

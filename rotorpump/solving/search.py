@@ -19,7 +19,7 @@ from rotorpump.solving.ipopt import Monitor
 from rotorpump.solving.news import Reporter
 from rotorpump.solving.routes import Candidate, Wanted, relax, settle_relaxed, take_direct
 from rotorpump.solving.seeds import Seed
-from rotorpump.tasks import Pump, Rotate, SpinUp, Task
+from rotorpump.tasks import Pump, Rotate, SpinUp
 from rotorpump.transcription.arcs import signature
 from rotorpump.transcription.guess import Guess
 from rotorpump.transcription.recovery import node_marks
@@ -30,17 +30,43 @@ AGREEMENT = 1e-2
 PROMISE = 2e-2
 """Relative advantage of a scout over the best optimum above which it has to be settled."""
 
-SCOUTED = 9
 ROTATIONS = 2
-"""Sequences of events that are scouted at most, and steady rotations."""
+"""Steady rotations that are scouted; they have but one sequence of events."""
 
-WIDE, AGAIN, FINER = 0.1, 2, 1.6
-"""Spread above which so many optima are looked at again on a so much finer mesh."""
+WIDE, FINER = 0.1, 1.6
+"""Spread above which the best optima are looked at again, on a so much finer mesh."""
 
 LEAST_RUNS = {Pump: 4, SpinUp: 4, Rotate: 3}
-MOST_RUNS = 14
-MOST_ITERATIONS = 3000
-"""Settled runs at least and at most, and iterations of all of them."""
+"""Settled runs at least."""
+
+
+@dataclass(frozen=True)
+class Effort:
+    """What a search may spend.
+
+    Parameters
+    ----------
+    scouted : int
+        Sequences of events that are scouted at most.
+    runs : int
+        Settled runs at most.
+    iterations : int
+        Iterations of all runs at most.
+    again : int
+        Optima that are looked at again at most.
+    """
+
+    scouted: int
+    runs: int
+    iterations: int
+    again: int
+
+
+PERSEVERANCE = 3
+"""Factor on the effort as long as nothing has solved."""
+
+EFFORT = {1: Effort(9, 14, 3000, 2), 2: Effort(6, 8, 2000, 0)}
+"""By number of slides: an iteration takes some four times as long with two of them."""
 
 
 @dataclass(eq=False)
@@ -66,6 +92,11 @@ class Search:
     unsolved: list[Candidate] = field(default_factory=list)
     scouts: list[tuple[Candidate, Seed]] = field(default_factory=list)
     interrupted: bool = False
+
+    @property
+    def effort(self) -> Effort:
+        """What the search may spend."""
+        return EFFORT[len(self.wanted.rig.driven)]
 
     @property
     def runs(self) -> int:
@@ -109,7 +140,10 @@ class Search:
     @property
     def finished(self) -> bool:
         """Whether the best optimum is confirmed, or the effort spent."""
-        if self.interrupted or self.runs >= MOST_RUNS or self.iterations >= MOST_ITERATIONS:
+        # without any optimum it is too early to give up
+        most = 1 if self.candidates else PERSEVERANCE
+        spent = self.runs >= most * self.effort.runs
+        if self.interrupted or spent or self.iterations >= most * self.effort.iterations:
             return True
         enough = self.runs >= LEAST_RUNS[type(self.wanted.task)] and self.agreeing >= 2
         return enough and not self._promising
@@ -139,7 +173,7 @@ def search(wanted: Wanted, seeds: list[Seed], reporter: Reporter) -> Search:
     scouting = can_scout(wanted.rig, wanted.measure)
     try:
         if scouting:
-            _scout(found, _distinct(wanted.task, seeds), reporter)
+            _scout(found, _distinct(found, seeds), reporter)
         direct = [partial(take_direct, wanted, seed) for seed in seeds]
         settled = [partial(_settle_scout, found, scout) for scout in list(found.scouts)]
         queue = [run for pair in zip_longest(settled, direct) for run in pair if run is not None]
@@ -155,11 +189,12 @@ def search(wanted: Wanted, seeds: list[Seed], reporter: Reporter) -> Search:
     return found
 
 
-def _distinct(task: Task, seeds: list[Seed]) -> list[Seed]:
+def _distinct(found: Search, seeds: list[Seed]) -> list[Seed]:
     """Pick the first seed of each sequence of events; rotations have but one, so some of them."""
-    if isinstance(task, Rotate):
+    if isinstance(found.wanted.task, Rotate):
         return seeds[:ROTATIONS]
-    return list({seed.word: seed for seed in reversed(seeds)}.values())[::-1][:SCOUTED]
+    distinct = list({seed.word: seed for seed in reversed(seeds)}.values())[::-1]
+    return distinct[: found.effort.scouted]
 
 
 def _scout(found: Search, seeds: list[Seed], reporter: Reporter) -> None:
@@ -180,7 +215,7 @@ def _look_again(found: Search, reporter: Reporter) -> None:
     chains: dict[str, Candidate] = {}
     for candidate in found.candidates:
         chains.setdefault(signature(candidate.program.problem.chain), candidate)
-    for number, candidate in enumerate(list(chains.values())[:AGAIN], 1):
+    for number, candidate in enumerate(list(chains.values())[: found.effort.again], 1):
         monitor = reporter.monitor(f"second look {number}", found.candidates[0].value)
         marks = node_marks(candidate.program, candidate.outcome.variables)
         ends = [float(marks[k]) for k in candidate.program.mesh.edges[1:]]
@@ -196,7 +231,8 @@ def _look_again(found: Search, reporter: Reporter) -> None:
 
 def _usable(scout: Candidate) -> bool:
     """Whether a scout's value means something; running out of iterations is no harm to that."""
-    return scout.solved or scout.outcome.status is Status.LIMIT_REACHED
+    ended = scout.solved or scout.outcome.status is Status.LIMIT_REACHED
+    return ended and not math.isnan(scout.value)
 
 
 def _settle_scout(

@@ -39,6 +39,10 @@ class Arc:
 
 Chain = tuple[Arc, ...]
 
+JITTER, JITTER_SHARE = 0.01, 0.01
+"""Turning, in radians and as a share of all that the motion spans, below which a reversal is none.
+"""
+
 
 def signature(chain: Chain) -> str:
     """Return the arcs' ends in a word; it tells one sequence of events from another."""
@@ -62,10 +66,11 @@ def cut_into_arcs(guess: Guess, *, final_angle: float | None = None) -> tuple[Ch
     ends : list of float
         Time at which each arc ends [s].
     """
-    direction = _first_direction(guess)
+    events = _events(guess)
+    direction = _first_direction(guess, events[0][0] if events else float(guess.time[-1]))
     chain: list[Arc] = []
     ends: list[float] = []
-    for time, angle in _events(guess):
+    for time, angle in events:
         if math.isnan(angle):
             chain.append(Arc(direction, "standstill"))
             direction = -direction
@@ -86,22 +91,16 @@ def cut_into_arcs(guess: Guess, *, final_angle: float | None = None) -> tuple[Ch
     return (*chain, last), [*ends, duration]
 
 
-def _first_direction(guess: Guess) -> int:
-    moving = np.flatnonzero(guess.speed)
-    return int(np.sign(guess.speed[moving[0]])) if moving.size else 1
+def _first_direction(guess: Guess, first: float) -> int:
+    """Direction in which the wheel turns up to the first event."""
+    turned = float(guess.at("angle", np.array(first)) - guess.angle[0])
+    return -1 if turned < 0.0 else 1
 
 
 def _events(guess: Guess) -> list[tuple[float, float]]:
     """List times of standstills (angle not a number) and of passages through multiples of π."""
-    events: list[tuple[float, float]] = []
-    time, angle, speed = guess.time, guess.angle, guess.speed
-    flips = np.flatnonzero(
-        (speed[:-1] * speed[1:] < 0.0) | ((speed[1:] == 0.0) & (speed[:-1] != 0.0))
-    )
-    for k in flips:
-        share = speed[k] / (speed[k] - speed[k + 1])
-        events.append((float(time[k] + share * (time[k + 1] - time[k])), math.nan))
-    level = angle / math.pi
+    events = [(moment, math.nan) for moment in _standstills(guess)]
+    time, level = guess.time, guess.angle / math.pi
     # A start that lies on a multiple of π is left, not passed.
     for k in np.flatnonzero(np.floor(level[1:]) != np.floor(level[:-1])):
         for crossed in range(
@@ -111,4 +110,37 @@ def _events(guess: Guess) -> list[tuple[float, float]]:
             moment = float(time[k] + share * (time[k + 1] - time[k]))
             if moment > time[0]:
                 events.append((moment, crossed * math.pi))
-    return sorted(events)
+    kept: list[tuple[float, float]] = []
+    for event in sorted(events):
+        if kept and kept[-1][1] == event[1]:
+            # passed back and forth in a jitter
+            kept.pop()
+        else:
+            kept.append(event)
+    return kept
+
+
+def _standstills(guess: Guess) -> list[float]:
+    """List the times at which the wheel turns round [s].
+
+    A wheel that friction nearly holds may jitter under the moves of the mass. Turning back and
+    forth by less than a small share of the motion is no event.
+    """
+    time, speed = guess.time, guess.speed
+    # a wheel that sticks for a while may go on either way: only what it does then tells
+    moving = np.flatnonzero(speed)
+    flips = moving[:-1][speed[moving[:-1]] * speed[moving[1:]] < 0.0]
+    share = speed[flips] / (speed[flips] - speed[flips + 1])
+    moments = time[flips] + share * (time[flips + 1] - time[flips])
+    angles = np.concatenate((guess.angle[:1], guess.at("angle", moments), guess.angle[-1:]))
+    least = min(JITTER, JITTER_SHARE * float(np.ptp(guess.angle)))
+    while moments.size:
+        # from the start to the first, between neighbours, from the last to the end
+        turned = np.abs(np.diff(angles))
+        k = int(np.argmin(turned))
+        if turned[k] >= least:
+            break
+        gone = [i for i in (k - 1, k) if 0 <= i < moments.size]
+        moments = np.delete(moments, gone)
+        angles = np.delete(angles, [i + 1 for i in gone])
+    return [float(moment) for moment in moments]

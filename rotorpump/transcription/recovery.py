@@ -255,11 +255,14 @@ def seats(program: Program, z: Array, number: int) -> Marks:
     """Stop on which the mass sits throughout each interval, in the pattern or not.
 
     A mass at a stop with no speed at both ends of an interval does not move in it, since its
-    position is a cubic.
+    position is a cubic. Where the drive's force is summed up, the pattern alone counts: the force
+    that presses the mass onto its stop is part of the sum.
     """
     axis = program.problem.form.axes[number]
     rests: Marks = program.mesh.rests[number]
     if not program.problem.rig.slide(axis.name).bearing or axis.rung == RATE_LIMITED:
+        return rests
+    if program.problem.form.sums:
         return rests
     high, low = _seated_nodes(program, z, number)
     rests = np.where(high[:-1] & high[1:], HIGH, rests)

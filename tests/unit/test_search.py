@@ -105,17 +105,17 @@ def test_it_ends_when_enough_runs_agree(task):
 
 
 def test_it_goes_on_while_the_best_stands_alone():
-    lonely = (3.0, *[2.0] * (subject.MOST_RUNS - 2))
+    lonely = (3.0, *[2.0] * (subject.EFFORT[1].runs - 2))
     found = search_with(*lonely)
     assert not found.finished
     found.add(run(2.0, Status.FAILED))
-    assert found.runs == subject.MOST_RUNS
+    assert found.runs == subject.EFFORT[1].runs
     assert found.finished
 
 
 def test_it_ends_when_the_iterations_are_spent():
     found = search_with(2.0)
-    found.add(run(1.0, Status.FAILED, iterations=subject.MOST_ITERATIONS))
+    found.add(run(1.0, Status.FAILED, iterations=subject.EFFORT[1].iterations))
     assert found.finished
 
 
@@ -139,5 +139,5 @@ def test_a_scout_that_claims_clearly_more_is_settled_first(claim, goes_on):
 
 def test_the_iterations_of_scouts_count():
     found = search_with(2.0)
-    found.scouts.append((run(9.0, iterations=subject.MOST_ITERATIONS), None))
+    found.scouts.append((run(9.0, iterations=subject.EFFORT[1].iterations), None))
     assert found.finished
