@@ -74,9 +74,7 @@ def slide_pace(rig: Rig, trajectory: Trajectory, axis: str) -> float:
     return fastest or rig.slide(axis).length / trajectory.duration
 
 
-def _stopped(
-    case: Case, trajectory: Trajectory, nodes: NDArray[np.intp]
-) -> NDArray[np.bool_]:
+def _stopped(case: Case, trajectory: Trajectory, nodes: NDArray[np.intp]) -> NDArray[np.bool_]:
     """Whether the mass rests on a stop of any slide at these nodes."""
     stopped = np.zeros(nodes.size, dtype=bool)
     for axis in case.forced:

@@ -10,7 +10,6 @@ from rotorpump.rig.rig import Rig
 from rotorpump.solving.seeds import Seed
 from rotorpump.tasks import Pump, Rotate, SpinUp, Task
 from rotorpump.transcription.form import ANGLE, TIME, Form
-from rotorpump.transcription.path import FORCE_LIMITED
 from rotorpump.transcription.problem import Goal, Problem, Start, Term
 from rotorpump.transcription.scaling import Scales
 
@@ -23,12 +22,10 @@ def can_rest(rig: Rig, problem: Problem) -> bool:
 def can_scout(rig: Rig, measure: Measure) -> bool:
     """Whether a relaxed solve tells the pattern in which the mass rests on its stops.
 
-    It does where stops bear what the drive cannot; not where the drive's force is what counts, or
-    changes at a limited rate.
+    It does where stops bear what the drive cannot; not where the drive's force is what counts.
     """
-    forms = Form.of(rig, TIME, measure.name).axes
-    bearing = any(axis.forceful and axis.bears for axis in forms)
-    return bearing and measure not in COSTS and all(a.rung <= FORCE_LIMITED for a in forms)
+    bearing = any(axis.bears for axis in Form.of(rig, TIME, measure.name).axes)
+    return bearing and measure not in COSTS
 
 
 def assign(rig: Rig, task: Task, measure: Measure, seed: Seed, *, relaxed: bool = False) -> Problem:

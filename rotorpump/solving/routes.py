@@ -35,6 +35,9 @@ PER_ARC = 6
 PER_HALF_TURN = 16
 """Intervals of the first mesh, in each arc of a motion in time and of a steady rotation."""
 
+RATED = 2.5
+"""Factor on these where forces change at a limited rate: a move then has twice as many phases."""
+
 RELAXATION = 1e-2
 TIGHTER = (1e-3, 1e-4)
 """First relaxation of the end stops, as a share of force limit times stroke, and the next ones."""
@@ -108,8 +111,12 @@ def solve_posed(wanted: Wanted, problem: Problem, seed: Seed, monitor: Monitor |
 
 
 def relax(wanted: Wanted, seed: Seed, monitor: Monitor | None, *, finer: float = 1.0) -> Candidate:
-    """Solve with relaxed end stops, on equal intervals: quick, and a little too rosy."""
-    problem = assign(wanted.rig, wanted.task, wanted.measure, seed, relaxed=True)
+    """Solve with relaxed end stops, on equal intervals: quick, and a little too rosy.
+
+    Limits on the rates of the forces are left out.
+    """
+    rig = wanted.rig.with_slides(lambda slide: replace(slide, force_rate=math.inf))
+    problem = assign(rig, wanted.task, wanted.measure, seed, relaxed=True)
     program = Program(problem, _first_mesh(problem, flexible=False, finer=finer), RELAXATION)
     start = program.start_from(seed.guess, seed.ends)
     settings = Settings(tolerance=1e-4, iterations=RELAXED_ITERATIONS)
@@ -125,16 +132,18 @@ def settle_relaxed(
     if relaxed.outcome.status is Status.INTERRUPTED:
         return relaxed
     program, variables = relaxed.program, relaxed.outcome.variables
-    problem = program.problem
-    mesh = program.mesh.settled(node_marks(program, variables))
-    mesh = _with_pattern(program, variables, mesh)
-    strict = Program(assign(problem.rig, wanted.task, wanted.measure, seed), mesh)
-    if strict.problem.form.node == problem.form.node:
-        start = strict.variable_bounds.clip(variables)
+    posed = assign(wanted.rig, wanted.task, wanted.measure, seed)
+    marks = node_marks(program, variables)
+    ends = [float(marks[k]) for k in program.mesh.edges[1:]]
+    guess = Guess.from_trajectory(relaxed.trajectory)
+    if posed.form.rated:
+        found = solve_posed(wanted, posed, Seed(guess, seed.chain, ends), monitor)
+        return replace(found, iterations=relaxed.iterations + found.iterations)
+    strict = Program(posed, _with_pattern(program, variables, program.mesh.settled(marks)))
+    if posed.form.sums:
+        start = strict.start_from(guess, ends)
     else:
-        marks = node_marks(program, variables)
-        ends = [float(marks[k]) for k in program.mesh.edges[1:]]
-        start = strict.start_from(Guess.from_trajectory(relaxed.trajectory), ends)
+        start = strict.variable_bounds.clip(variables)
     settings = Settings(barrier=1e-2, iterations=MOST_ITERATIONS)
     return _settle(wanted, strict, start, settings, monitor, relaxed.iterations)
 
@@ -160,6 +169,7 @@ def _tighten(wanted: Wanted, relaxed: Candidate, monitor: Monitor | None) -> Can
 
 
 def _first_mesh(problem: Problem, *, flexible: bool, finer: float = 1.0) -> Mesh:
+    finer *= RATED if problem.form.rated else 1.0
     intervals = round(finer * (PER_HALF_TURN if problem.start is None else PER_ARC))
     axes = len(problem.form.axes)
     return Mesh.uniform(len(problem.chain), intervals, axes, flexible=flexible)

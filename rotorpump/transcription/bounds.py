@@ -97,8 +97,8 @@ def _bound_start(bounds: Bounds, start: Start, layout: Layout, scales: Scales) -
             continue
         place = scales.slide(axis.name).scaled(0, getattr(start, axis.name))
         bounds.limit(layout.nodes(axis.name)[0], place, place)
-        for name in axis.node[1:3]:
-            bounds.limit(layout.nodes(name)[0], 0.0, 0.0)
+        if axis.forceful:
+            bounds.limit(layout.nodes(axis.node[1])[0], 0.0, 0.0)
 
 
 def _bound_slide(

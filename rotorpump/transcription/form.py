@@ -159,6 +159,11 @@ class Form:
         return slice(first, first + self.axes[axis].controls)
 
     @property
+    def rated(self) -> bool:
+        """Whether the force of some drive changes at a limited rate."""
+        return any(axis.rung == RATE_LIMITED for axis in self.axes)
+
+    @property
     def ratings(self) -> tuple[str, ...]:
         """Sums that the continuous ratings of the drives bound."""
         return tuple(name for name in self.sums if name.endswith("_square"))
@@ -197,7 +202,7 @@ class Form:
                 f"{axis.name} force": points if strict else 0,
                 f"{axis.name} power": len(POWER_PLACES) if axis.forceful and axis.power else 0,
                 f"{axis.name} line": len(LINE_PLACES) if strict and axis.motor_line else 0,
-                f"{axis.name} rate": self.degree + 1 if rated else 0,
+                f"{axis.name} rate": points + 1 if rated else 0,
                 f"{axis.name} drive": 2 if rated else 0,
                 f"{axis.name} bearing": points if rated else 0,
             }

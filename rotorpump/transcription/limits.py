@@ -170,7 +170,7 @@ def _rated_rows(
     stacked = casadi.vertcat(*needed)
     rates = [
         casadi.dot(casadi.DM(slopes), stacked) / now.passing
-        for slopes, now in zip(nodes.slopes, instants[1:], strict=True)
+        for slopes, now in zip((nodes.start_slope, *nodes.slopes), instants, strict=True)
     ]
     linear = [first + (last - first) * float(point) for point in nodes.points]
     duration = sum(

@@ -25,11 +25,14 @@ class Nodes:
         Row j gives the derivative at collocation point j from the values at all points.
     weights : ndarray, shape (d,)
         Quadrature weights of the collocation points.
+    start_slope : ndarray, shape (d + 1,)
+        The derivative at the start from the values at all points.
     """
 
     points: Array
     slopes: Array
     weights: Array
+    start_slope: Array
 
     @property
     def degree(self) -> int:
@@ -54,7 +57,8 @@ def radau_nodes(degree: int) -> Nodes:
     weights = np.linalg.solve(
         np.vander(points[1:], increasing=True).T, 1.0 / np.arange(1, degree + 1)
     )
-    return Nodes(points, _slopes(points)[1:], weights)
+    slopes = _slopes(points)
+    return Nodes(points, slopes[1:], weights, slopes[0])
 
 
 def lagrange_basis(nodes: Sequence[Any], place: Any) -> list[Any]:

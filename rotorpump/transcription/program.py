@@ -34,7 +34,9 @@ from rotorpump.transcription.terminal import (
 Array = NDArray[np.float64]
 
 FLEXIBILITY = (0.2, 1.8)
-"""Least and largest length of a flexible interval, in nominal lengths."""
+RATED_FLEXIBILITY = (0.04, 3.0)
+"""Least and largest length of a flexible interval, in nominal lengths; the second where forces take
+a short time to change."""
 
 EVENNESS = 3e-3
 """Weight of the mean squared departure from nominal lengths."""
@@ -106,7 +108,8 @@ class Program:
     def _constraints(self) -> list[Block]:
         problem, form, layout = self.problem, self.problem.form, self.layout
         intervals = Block(interval_kernel(form), layout.places, self._interval_parameters)
-        least, largest = FLEXIBILITY if self.mesh.flexible else (1.0, 0.0)
+        flexibility = RATED_FLEXIBILITY if form.rated else FLEXIBILITY
+        least, largest = flexibility if self.mesh.flexible else (1.0, 0.0)
         shares = np.concatenate(self.mesh.shares)
         lengths = Block(
             length_kernel(),
@@ -221,6 +224,15 @@ class Program:
             # an acceleration that is shared by two intervals, and a force that gives it
             shared = 0.5 * (np.append(controls[:, 0], 0.0) + np.append(0.0, controls[:, 1]))
             z[layout.nodes(axis.node[2])] = shared / scales.acceleration
-            z[layout.nodes(axis.node[3])] = shared * self.problem.rig.mass / scales.force
+            load = _load(guess, axis.name, node_times, self.problem.rig.gravity)
+            force = (shared - load) * self.problem.rig.mass
+            z[layout.nodes(axis.node[3])] = force / scales.force
         else:
             z[layout.controls(number)] = scales.scaled(axis.rung, controls)
+
+
+def _load(guess: Guess, axis: str, time: Array, gravity: float) -> Array:
+    """Acceleration of a free mass along an axis, that of the wheel left out [m/s2]."""
+    angle = guess.at("angle", time)
+    pull = np.cos(angle) if axis == "radial" else -np.sin(angle)
+    return np.asarray(guess.at(axis, time) * guess.at("speed", time) ** 2 + gravity * pull)

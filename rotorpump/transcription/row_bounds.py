@@ -8,6 +8,7 @@ import numpy as np
 from rotorpump.transcription.bounds import Bounds
 from rotorpump.transcription.form import Form
 from rotorpump.transcription.mesh import FREE, HIGH, Marks, Mesh
+from rotorpump.transcription.path import RATE_LIMITED
 from rotorpump.transcription.problem import Problem
 from rotorpump.transcription.scaling import Scales
 
@@ -103,7 +104,7 @@ def _free_seated(bounds: Bounds, group: slice, problem: Problem, mesh: Mesh, axi
     """Free the stroke rows next to a seat, where place and speed of the mass are given.
 
     Such a row holds with equality whatever the other variables are: without an interior, it would
-    have no finite multiplier.
+    have no finite multiplier. Where the acceleration is given there as well, both rows do so.
     """
     resting = mesh.rests[axis] != FREE
     start = problem.start
@@ -112,6 +113,9 @@ def _free_seated(bounds: Bounds, group: slice, problem: Problem, mesh: Mesh, axi
     else:
         # the motion begins with the mass at rest, perhaps at an end of its stroke
         before, after = np.append(True, resting[:-1]), np.append(resting[1:], False)
+    if problem.form.axes[axis].rung == RATE_LIMITED:
+        seated = np.append(False, resting[:-1]) if start is not None else before
+        before, after = before | after, after | seated
     bounds.limit((before, group.start), -np.inf, np.inf)
     bounds.limit((after, group.start + 1), -np.inf, np.inf)
 
@@ -147,6 +151,10 @@ def _bound_rated(
     )
     bounds.limit((~resting & before, drive.start), 0.0, 0.0)
     bounds.limit((~resting, drive.stop - 1), 0.0, 0.0)
+    # at the nodes, the force that is a variable there has the bounds already
+    force = groups[f"{axis} force"]
+    for row in (force.start, force.stop - 1):
+        bounds.limit((everywhere, row), -np.inf, np.inf)
     bounds.limit((resting & ~before, bearing.start), -np.inf, np.inf)
     bounds.limit((resting & ~after, bearing.stop - 1), -np.inf, np.inf)
     # what is needed on a stop is not what the drive does
