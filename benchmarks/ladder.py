@@ -5,22 +5,28 @@ from __future__ import annotations
 
 import math
 import sys
-import time
 from collections.abc import Iterator
 from dataclasses import replace
 
+from solves import Table, timed_solve
+
 import rotorpump
-from rotorpump.measures import measure
 from rotorpump.rig.friction import AxleFriction
 from rotorpump.rig.rig import Rig
 from rotorpump.rig.slide import Slide
 from rotorpump.rig.wheel import Wheel
-from rotorpump.solution.wording import verdict_lines
 from rotorpump.tasks import Rotate, SpinUp, Task
 
 FACTORS = (1, 2, 4, 8, 16, 32, 64)
-COLUMNS = "{:<14} {:>10} {:>10} {:>12} {:>14}  {:<9} {:>8}"
-HEAD = ("limits", "speed m/s", "force N", "optimum", "optimum/ideal", "verified", "seconds")
+COLUMNS = {
+    "limits": "<11",
+    "speed m/s": ">9",
+    "force N": ">7",
+    "optimum": ">13",
+    "optimum/ideal": ">13",
+    "verified": "<8",
+    "seconds": ">7",
+}
 
 CASES: dict[str, tuple[Rig, Task]] = {
     "rotate": (
@@ -57,30 +63,22 @@ def climb(name: str, rig: Rig, task: Task) -> bool:
     """Print the ladder of one case; return whether every optimum on it is verified."""
     ideal = rotorpump.run_ideal(rig, task)
     print(f"{name}: ideal law {ideal.objective}")
-    print(COLUMNS.format(*HEAD), flush=True)
+    table = Table(COLUMNS)
+    table.head()
     good = True
-    for limits, slide in rungs(rig.radial):
-        began = time.perf_counter()
-        solution = rotorpump.optimize(replace(rig, radial=slide), task, on_failure="return")
-        seconds = time.perf_counter() - began
-        value = solution.objective.value
-        print(
-            COLUMNS.format(
-                limits,
-                f"{slide.speed:g}",
-                f"{slide.force:g}",
-                f"{value:.6g} {measure(task).unit}" if solution.success else solution.status.name,
-                f"{value / ideal.objective.value:.4f}",
-                "yes" if solution.verified else "NO",
-                f"{seconds:.2f}",
-            ),
-            flush=True,
+    for limits, slide in rungs(rig.slide("radial")):
+        solve = timed_solve(replace(rig, radial=slide), task)
+        table.row(
+            limits,
+            f"{slide.speed:g}",
+            f"{slide.force:g}",
+            solve.value,
+            f"{solve.solution.objective.value / ideal.objective.value:.4f}",
+            solve.verdict,
+            f"{solve.seconds:.2f}",
         )
-        if not solution.success:
-            print(f"  {solution.message}", flush=True)
-        elif not solution.verified:
-            print(*verdict_lines(solution), sep="\n", flush=True)
-        good = good and solution.success and solution.verified
+        solve.explain()
+        good = good and solve.good
     print()
     return good
 

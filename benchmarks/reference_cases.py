@@ -11,28 +11,25 @@ import argparse
 import json
 import statistics
 import sys
-import time
 from dataclasses import dataclass
 from pathlib import Path
 
-import rotorpump
+from solves import Table, shortfall, timed_solve
+
 from rotorpump.errors import InputError
 from rotorpump.measures import measure
 from rotorpump.rig.rigfile import read_rig
-from rotorpump.solution.wording import verdict_lines
 
-COLUMNS = "{:<14} {:>12} {:<6} {:>8}  {:<9} {:<9} {:>10} {:>7} {:>8}"
-HEAD = (
-    "case",
-    "value",
-    "unit",
-    "ratio",
-    "tolerance",
-    "verified",
-    "iterations",
-    "starts",
-    "seconds",
-)
+COLUMNS = {
+    "case": "<14",
+    "value": ">15",
+    "ratio": ">7",
+    "tolerance": "<9",
+    "verified": "<8",
+    "iterations": ">10",
+    "starts": ">6",
+    "seconds": ">7",
+}
 
 
 @dataclass(frozen=True)
@@ -60,8 +57,9 @@ def main() -> int:
     folder: Path = parser.parse_args().folder
     try:
         references = read_references(folder)
-        print(COLUMNS.format(*HEAD), flush=True)
-        rows = [run(folder, name, reference) for name, reference in references.items()]
+        table = Table(COLUMNS)
+        table.head()
+        rows = [run(table, folder, name, reference) for name, reference in references.items()]
     except InputError as error:
         print(error, file=sys.stderr)
         return 2
@@ -86,38 +84,30 @@ def read_references(folder: Path) -> dict[str, Reference]:
     return references
 
 
-def run(folder: Path, name: str, reference: Reference) -> Row:
+def run(table: Table, folder: Path, name: str, reference: Reference) -> Row:
     """Optimize one case, and print its line of the table."""
     rig, task = read_rig(folder / f"{name}.toml")
-    wanted = measure(task)
-    if not reference.objective.endswith(f"[{wanted.unit}]"):
-        raise InputError("objective", f"must be in [{wanted.unit}]", reference.objective, name)
-    began = time.perf_counter()
-    solution = rotorpump.optimize(rig, task, on_failure="return")
-    seconds = time.perf_counter() - began
-    ratio = solution.objective.value / reference.reference
-    shortfall = 1.0 - ratio if wanted.more_is_better else ratio - 1.0
-    met = solution.success and shortfall <= reference.tolerance
-    counts = solution.statistics
-    print(
-        COLUMNS.format(
-            name,
-            f"{solution.objective.value:.6g}",
-            wanted.unit,
-            f"{ratio:.4f}",
-            "met" if met else "MISSED" if solution.success else solution.status.name,
-            "yes" if solution.verified else "NO",
-            counts.iterations,
-            counts.starts,
-            f"{seconds:.2f}",
-        ),
-        flush=True,
+    unit = measure(task).unit
+    if not reference.objective.endswith(f"[{unit}]"):
+        raise InputError("objective", f"must be in [{unit}]", reference.objective, name)
+    solve = timed_solve(rig, task)
+    value, counts = solve.solution.objective.value, solve.solution.statistics
+    met = (
+        solve.solution.success
+        and shortfall(task, value, reference.reference) <= reference.tolerance
     )
-    if not solution.success:
-        print(f"  {solution.message}", flush=True)
-    elif not solution.verified:
-        print(*verdict_lines(solution), sep="\n", flush=True)
-    return Row(met, solution.verified, seconds)
+    table.row(
+        name,
+        solve.value,
+        f"{value / reference.reference:.4f}",
+        "met" if met else "MISSED",
+        solve.verdict,
+        f"{counts.iterations}",
+        f"{counts.starts}",
+        f"{solve.seconds:.2f}",
+    )
+    solve.explain()
+    return Row(met, solve.solution.verified, solve.seconds)
 
 
 if __name__ == "__main__":

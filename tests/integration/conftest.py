@@ -13,11 +13,11 @@ import rotorpump as rp
 
 @pytest.fixture(scope="session")
 def solve():
-    """Optimize with default settings, once for each rig and task."""
+    """Optimize with default settings, once for each rig, task and objective."""
 
     @cache
-    def once(rig, task):
-        return rp.optimize(rig, task)
+    def once(rig, task, objective=None):
+        return rp.optimize(rig, task, objective=objective)
 
     return once
 

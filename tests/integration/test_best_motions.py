@@ -7,13 +7,11 @@ import math
 
 import numpy as np
 import pytest
-from bench_rigs import BENCH, CASES, PUMP, ROTATE, advantage
+from bench_rigs import BENCH, CASES, PUMP, ROTATE, advantage, dense
 from scipy.integrate import solve_ivp
 from scipy.interpolate import CubicHermiteSpline
 
 import rotorpump as rp
-
-DENSE = 20_001
 
 ROUNDING = 1e-6
 """Stroke and speed limit hold between the nodes by construction, so only rounding is allowed."""
@@ -27,10 +25,6 @@ def case(request, solve):
     """A rig, its task, and the best motion."""
     rig, task = CASES[request.param]
     return rig, task, solve(rig, task)
-
-
-def dense(trajectory):
-    return trajectory.at(np.linspace(trajectory.time[0], trajectory.time[-1], DENSE))
 
 
 def test_it_is_solved_and_verified(case):

@@ -2,31 +2,37 @@
 """The price of a limit is the slope of the best value: found anew with a looser and a tighter one.
 
 By the envelope theorem the multipliers of a limit are the derivative of the optimal value with
-respect to it, the motion being free to adapt. The case is a rotation with the speed limit active
-for a third and the force limit for half of the time, so that both slopes are far above the noise
-of the solves (relative 1e-4, against some per cent here).
+respect to it, the motion being free to adapt. The case is a rotation with every limit active for
+so long that its slope is far above the noise of the solves (relative 1e-4, against a per cent or
+more here).
 """
 
 from __future__ import annotations
 
 import pytest
-from bench_rigs import BENCH, ROTATE, with_slide
+from bench_rigs import BENCH, DRIVE_LIMITS, MOTORED, ROTATE, with_slide
 
 import rotorpump as rp
+
+RATED = with_slide(MOTORED, **DRIVE_LIMITS["continuous force"])
 
 STEP = 0.03
 """Relative change of a limit; a central difference, so its own error is of the order STEP²."""
 
 
-@pytest.mark.parametrize(("name", "unit"), [("speed", "m/s"), ("force", "N")])
-def test_a_price_is_the_slope_of_the_best_value(name, unit, rotated):
-    use = next(entry for entry in rotated.limits if entry.name == f"radial {name}")
-    limit = getattr(BENCH.radial, name)
+@pytest.mark.parametrize(
+    ("rig", "name", "unit"),
+    [(BENCH, "speed", "m/s"), (BENCH, "force", "N"), (RATED, "continuous_force", "N")],
+)
+def test_a_price_is_the_slope_of_the_best_value(rig, name, unit, solve):
+    known = solve(rig, ROTATE)
+    use = next(entry for entry in known.limits if entry.name == f"radial {name.replace('_', ' ')}")
+    limit = getattr(rig.radial, name)
     assert (use.value, use.unit) == (limit, unit)
     assert use.active_share > 0.25
     values = []
     for factor in (1.0 - STEP, 1.0 + STEP):
-        best = rp.optimize(with_slide(BENCH, **{name: factor * limit}), ROTATE, guess=rotated)
+        best = rp.optimize(with_slide(rig, **{name: factor * limit}), ROTATE, guess=known)
         assert best.verified
         values.append(best.objective.value)
     slope = (values[1] - values[0]) / (2.0 * STEP * limit)
