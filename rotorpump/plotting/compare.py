@@ -74,6 +74,9 @@ def plot_comparison(comparison: Comparison, axes: Sequence[Axes] | None = None) 
     motions = _motions(comparison)
     for motion in motions:
         along, *columns = curves(motion.trajectory, (across, *names))
+        if turning and along.size:
+            # the law's steady turn comes after many others
+            along = along - 2.0 * math.pi * round(float(along[0]) / (2.0 * math.pi))
         for panel, name, column in zip(panels, names, columns, strict=True):
             if motion.driven or not name.endswith("_force"):
                 draw(panel, along, column, motion.pen, motion.label)

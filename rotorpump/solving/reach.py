@@ -14,6 +14,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from rotorpump.laws.instantaneous import run_ideal
+from rotorpump.laws.lead import LeadRun
 from rotorpump.laws.trials import Trial, energy_of, goal_measure
 from rotorpump.measures import MEASURES
 from rotorpump.physics.constants import Constants
@@ -70,8 +71,9 @@ def reach_goal(
     """Drive the goal's quantity as high as it gets in the time in which the law saturates."""
     rig = wanted.rig
     measure, goal = goal_measure(rig, task)
-    best = max(trials, key=lambda trial: float(measure(trial.run.states).max()))
-    highest = float(measure(best.run.states).max())
+    runs = [_in_time(trial.run, task.deadline) for trial in trials]
+    best = max(runs, key=lambda run: float(measure(run.states).max()))
+    highest = float(measure(best.states).max())
     guess = _climb(rig, best)
     name = "energy" if task.energy is not None else "speed" if task.speed is not None else "angle"
     unit = {"energy": "J", "speed": "rad/s", "angle": "rad"}[name]
@@ -101,13 +103,18 @@ def reach_goal(
     )
 
 
-def _climb(rig: Rig, trial: Trial) -> Guess | None:
+def _in_time(run: LeadRun, deadline: float | None) -> LeadRun:
+    """Return a run of the law up to the deadline."""
+    return run if deadline is None else run.cut(max(1, math.floor(deadline / run.step)))
+
+
+def _climb(rig: Rig, run: LeadRun) -> Guess | None:
     """Return a saturated run of the law up to its highest energy, if it moves at all."""
-    energy = energy_of(rig, trial.run.states)
+    energy = energy_of(rig, run.states)
     until = int(np.argmax(energy >= 0.999 * energy.max()))
-    if until < 2 or not np.ptp(trial.run.states[0]):
+    if until < 2 or not np.ptp(run.states[0]):
         return None
-    guess = guess_of(rig, trial.run.cut(until))
+    guess = guess_of(rig, run.cut(until))
     _, ends = cut_into_arcs(guess)
     return guess.cut(0.0, ends[MOST_ARCS - 1]) if len(ends) > MOST_ARCS else guess
 
@@ -125,7 +132,7 @@ def reach_rotation(wanted: Wanted, task: Rotate, monitor: Monitor | None) -> Rea
     rig = wanted.rig
     best: Candidate | None = None
     for duration in _turn_durations(rig, task):
-        seed = _plain_turn(rig, duration)
+        seed = plain_turn(rig, duration)
         gains = (Term("momentum", -1.0), Term("momentum", 1.0, at_start=True))
         posed = Problem(
             rig,
@@ -180,7 +187,7 @@ def _least_speed(rig: Rig) -> float:
     return math.sqrt(4.0 * c.gravity * c.lowest_moment / inertia)
 
 
-def _plain_turn(rig: Rig, duration: float) -> Seed:
+def plain_turn(rig: Rig, duration: float) -> Seed:
     """Make up a turn of the given duration: the mass sways once, ahead of the wheel."""
     angle = np.linspace(0.0, 2.0 * math.pi, 400)
     speed = np.full_like(angle, 2.0 * math.pi / duration)
@@ -219,6 +226,6 @@ def turn_balance(rig: Rig, trajectory: Trajectory, load_torque: float) -> TurnBa
     from scipy.integrate import simpson  # noqa: PLC0415
 
     friction = float(simpson(-torque * dense.speed, x=dense.time))
-    load = float(load_torque * simpson(np.abs(dense.speed), x=dense.time))
+    load = load_torque * abs(float(trajectory.angle[-1] - trajectory.angle[0]))
     rise = float(trajectory.energy[-1] - trajectory.energy[0])
     return TurnBalance(rise + friction + load, friction, load)

@@ -110,9 +110,16 @@ def _needed_forces(
 
 
 def refine(
-    wanted: Wanted, candidate: Candidate, accuracy: float, monitor: Monitor | None
+    wanted: Wanted,
+    candidate: Candidate,
+    accuracy: float,
+    monitor: Monitor | None,
+    *,
+    everywhere: bool = False,
 ) -> tuple[Candidate, int]:
     """Divide inaccurate intervals and solve again, until the accuracy holds.
+
+    With ``everywhere``, all intervals are divided at first, accurate or not.
 
     Returns
     -------
@@ -123,14 +130,16 @@ def refine(
     """
     for rounds in range(ROUNDS):
         errors = interval_errors(candidate.program, candidate.outcome.variables)
-        if errors.max() <= accuracy:
+        halved = everywhere and rounds == 0
+        if errors.max() <= accuracy and not halved:
             return candidate, rounds
         # Both estimates shrink with about the third power of the length.
         pieces = np.ceil(np.cbrt(SAFETY * errors / accuracy)).astype(np.intp)
         # Switches move a little when the mesh changes: their neighbours are divided as well.
         pieces[1:] = np.maximum(pieces[1:], np.minimum(pieces[:-1], 2))
         pieces[:-1] = np.maximum(pieces[:-1], np.minimum(pieces[1:], 2))
-        finer = _solve_on_finer(wanted, candidate, np.clip(pieces, 1, MOST_PIECES), monitor)
+        pieces = np.clip(pieces, 2 if halved else 1, MOST_PIECES)
+        finer = _solve_on_finer(wanted, candidate, pieces, monitor)
         if finer.outcome.status is Status.INTERRUPTED:
             return finer, rounds
         if not finer.solved:

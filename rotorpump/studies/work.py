@@ -23,7 +23,7 @@ from rotorpump.solution.usage import drive_uses
 from rotorpump.solving.assignment import gain
 from rotorpump.solving.multipliers import limit_prices
 from rotorpump.solving.news import Reporter
-from rotorpump.solving.reach import Reach, reach_goal, reach_rotation
+from rotorpump.solving.reach import Reach, plain_turn, reach_goal, reach_rotation
 from rotorpump.solving.refinement import refine
 from rotorpump.solving.routes import Candidate, Wanted
 from rotorpump.solving.search import Search, search
@@ -44,8 +44,9 @@ FINALISTS = 3
 TIGHTER = 10.0
 """A finalist that fails its checks is refined once more, to an accuracy so many times finer."""
 
-NOT_WORSE = 2e-3
-"""Share by which an optimum may lie below the practical law before it is refused."""
+NOT_WORSE = 5e-3
+"""Share by which an optimum may lie below the practical law before it is refused: so far the law's
+own value moves when its sampling is refined."""
 
 INTERRUPTED = "interrupted by the user"
 
@@ -95,6 +96,9 @@ class Work:
             # a motion that comes too late may still be hurried
             relevant = rehearse(rig, replace(task, deadline=None))
         seeds = seeds_from(rig, task, relevant)
+        if isinstance(task, Rotate) and task.mean_speed is not None:
+            # the law turns at a speed of its own, and its turn in slow motion may lead nowhere
+            seeds.append(plain_turn(rig, 2.0 * math.pi / task.mean_speed))
         if isinstance(task, SpinUp):
             # Other drives show ways with fewer swings, which may be open to this one as well, or
             # with more, which may cost less.
@@ -139,7 +143,9 @@ class Work:
             refined = candidate
             for accuracy in (self.accuracy, self.accuracy / TIGHTER):
                 monitor = self.reporter.monitor("refinement", candidate.value)
-                refined, rounds = refine(self.wanted, refined, accuracy, monitor)
+                # limits may be exceeded between the points of intervals that are accurate
+                again = accuracy < self.accuracy
+                refined, rounds = refine(self.wanted, refined, accuracy, monitor, everywhere=again)
                 if refined.outcome.status is Status.INTERRUPTED:
                     raise KeyboardInterrupt
                 extra = refined.iterations - candidate.iterations

@@ -26,6 +26,9 @@ Array = NDArray[np.float64]
 SEATED = 1e-6
 """Distance from a stop, and speed, in scaled units, below which the mass sits on it."""
 
+SHORTEST = 1e-12
+"""Length that stands for none [s]."""
+
 BETWEEN = 3e-3
 """Share of its force limit by which a drive may exceed it between the collocation points."""
 
@@ -52,6 +55,8 @@ class SlidesWithin:
         """Take the slides' motion from scaled variables."""
         layout = program.layout
         duration = np.diff(z[layout.nodes("time")])[:, None] * program.scales.time
+        # an iterate, unlike a solution, may have intervals without any length
+        duration = np.where(duration == 0.0, SHORTEST, duration)
         paths = {}
         for k, axis in enumerate(program.problem.form.axes):
             scales = program.scales.slide(axis.name)
