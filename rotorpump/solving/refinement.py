@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from rotorpump.solution.status import Status
 from rotorpump.solving.carrying import carry_multipliers
 from rotorpump.solving.ipopt import Monitor, Settings, run_ipopt
-from rotorpump.solving.routes import Candidate, Wanted, candidate_of
+from rotorpump.solving.routes import Candidate, Wanted, candidate_of, with_pattern_of
 from rotorpump.transcription.division import Division, divide_variables
 from rotorpump.transcription.mesh import FREE
 from rotorpump.transcription.program import Program
@@ -153,9 +153,11 @@ def _solve_on_finer(
 ) -> Candidate:
     program, variables = candidate.program, candidate.outcome.variables
     division = Division.of(pieces)
-    finer = replace(
-        program, mesh=program.mesh.settled(node_marks(program, variables)).split(pieces)
-    )
+    mesh = program.mesh.settled(node_marks(program, variables))
+    if program.problem.form.sums:
+        # a mass that has come to float in front of its stop is pressed onto it from now on
+        mesh = with_pattern_of(program, variables, mesh)
+    finer = replace(program, mesh=mesh.split(pieces))
     outcome = run_ipopt(
         finer,
         divide_variables(program, variables, finer, division),

@@ -105,7 +105,7 @@ def solve_posed(wanted: Wanted, problem: Problem, seed: Seed, monitor: Monitor |
     program = Program(problem, mesh)
     start = program.start_from(seed.guess, seed.ends)
     if can_rest(problem.rig, problem) or any(axis.rubs for axis in problem.form.axes):
-        program = Program(problem, _with_pattern(program, start, mesh))
+        program = Program(problem, with_pattern_of(program, start, mesh))
         start = program.variable_bounds.clip(start)
     return _settle(wanted, program, start, Settings(iterations=MOST_ITERATIONS), monitor, 0)
 
@@ -139,7 +139,7 @@ def settle_relaxed(
     if posed.form.rated:
         found = solve_posed(wanted, posed, Seed(guess, seed.chain, ends), monitor)
         return replace(found, iterations=relaxed.iterations + found.iterations)
-    strict = Program(posed, _with_pattern(program, variables, program.mesh.settled(marks)))
+    strict = Program(posed, with_pattern_of(program, variables, program.mesh.settled(marks)))
     if posed.form.sums:
         start = strict.start_from(guess, ends)
     else:
@@ -190,7 +190,7 @@ def _settle(
         if not best.solved:
             return best
         variables, mesh = best.outcome.variables, best.program.mesh
-        fresh_mesh = _with_pattern(best.program, variables, mesh)
+        fresh_mesh = with_pattern_of(best.program, variables, mesh)
         if _same_pattern(fresh_mesh, mesh):
             return best
         again = Program(program.problem, fresh_mesh)
@@ -224,7 +224,7 @@ def _same_pattern(one: Mesh, other: Mesh) -> bool:
     return np.array_equal(one.rests, other.rests) and np.array_equal(one.signs, other.signs)
 
 
-def _with_pattern(program: Program, z: Array, mesh: Mesh) -> Mesh:
+def with_pattern_of(program: Program, z: Array, mesh: Mesh) -> Mesh:
     """Return ``mesh`` with the pattern of resting intervals and directions that variables show."""
     rests, signs = mesh.rests.copy(), mesh.signs.copy()
     for k, axis in enumerate(program.problem.form.axes):

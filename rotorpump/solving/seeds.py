@@ -24,6 +24,9 @@ from rotorpump.transcription.guess import Guess
 STRONGER, WEAKER = (2.0, 4.0), (0.7, 0.5, 0.35)
 """Factors on force and speed with which the law makes a spin-up in fewer swings, or in more."""
 
+BEYOND = (3.0, 1.5)
+"""Factors on a continuous rating within which the law may use the drive's force for seeds."""
+
 PER_SIGNATURE = 3
 """Starting motions kept for each sequence of events."""
 
@@ -133,3 +136,22 @@ def rehearse_with_other_drives(rig: Rig, task: SpinUp, factors: Iterable[float])
 def _scaled(factor: float, slide: Slide) -> Slide:
     """Return a slide whose drive is stronger and faster by a factor."""
     return replace(slide, force=slide.force * factor, speed=slide.speed * factor)
+
+
+def rehearse_beyond_ratings(rig: Rig, task: Task) -> list[Trial]:
+    """Run the law on drives that may exceed their continuous ratings, within a plain force limit.
+
+    The law keeps a rating by moving with little force throughout; the best motions use much force
+    for short times.
+    """
+    trials: list[Trial] = []
+    if any(math.isfinite(slide.continuous_force) for slide in rig.slides):
+        for factor in BEYOND:
+            trials += rehearse(rig.with_slides(partial(_unrated, factor)), task, rounds=0)[:3]
+    return trials
+
+
+def _unrated(factor: float, slide: Slide) -> Slide:
+    """Return a slide whose rating is a plain limit, higher by a factor."""
+    force = min(slide.force, factor * slide.continuous_force)
+    return replace(slide, continuous_force=math.inf, force=force)

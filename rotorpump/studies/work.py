@@ -31,6 +31,7 @@ from rotorpump.solving.seeds import (
     STRONGER,
     WEAKER,
     Seed,
+    rehearse_beyond_ratings,
     rehearse_with_other_drives,
     seed_from,
     seeds_from,
@@ -96,6 +97,8 @@ class Work:
             # a motion that comes too late may still be hurried
             relevant = rehearse(rig, replace(task, deadline=None))
         seeds = seeds_from(rig, task, relevant)
+        hurried = replace(task, deadline=None) if isinstance(task, SpinUp) else task
+        seeds = seeds_from(rig, task, rehearse_beyond_ratings(rig, hurried)) + seeds
         if isinstance(task, Rotate) and task.mean_speed is not None:
             # the law turns at a speed of its own, and its turn in slow motion may lead nowhere
             seeds.append(plain_turn(rig, 2.0 * math.pi / task.mean_speed))
