@@ -7,6 +7,7 @@ import math
 import time
 from collections.abc import Sequence
 from dataclasses import replace
+from itertools import zip_longest
 
 import numpy as np
 
@@ -98,7 +99,10 @@ class Work:
             relevant = rehearse(rig, replace(task, deadline=None))
         seeds = seeds_from(rig, task, relevant)
         hurried = replace(task, deadline=None) if isinstance(task, SpinUp) else task
-        seeds = seeds_from(rig, task, rehearse_beyond_ratings(rig, hurried)) + seeds
+        if not isinstance(task, Rotate):
+            beyond = seeds_from(rig, task, rehearse_beyond_ratings(rig, hurried))
+            both = zip_longest(beyond, seeds)
+            seeds = [seed for pair in both for seed in pair if seed is not None]
         if isinstance(task, Rotate) and task.mean_speed is not None:
             # the law turns at a speed of its own, and its turn in slow motion may lead nowhere
             seeds.append(plain_turn(rig, 2.0 * math.pi / task.mean_speed))
