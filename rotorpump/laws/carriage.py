@@ -15,7 +15,7 @@ import casadi
 
 from rotorpump.physics.constants import Constants, absent
 from rotorpump.physics.equations import momentum_rate, sliding_momentum, wheel_speed
-from rotorpump.physics.forces import accelerations
+from rotorpump.physics.forces import accelerations, torque_against_hold
 from rotorpump.physics.state import HOLD, Motion, Push, Slides
 from rotorpump.rig.rig import AXES
 
@@ -86,12 +86,7 @@ class Carriages:
         angle, momentum, *places = self.state
         slides = Slides(*places)
         speed = wheel_speed(c, momentum, slides)
-        unbalance = c.unbalance_radial * casadi.sin(angle) + c.unbalance_tangential * casadi.cos(
-            angle
-        )
-        moment = slides.radial * still.tangential_contact - slides.tangential * still.radial_contact
-        torque = -c.gravity * unbalance - moment
-        held = c.coulomb + c.load_arm * still.axle_load
+        torque, held = torque_against_hold(casadi, c, angle, slides, still)
         standing = casadi.fabs(speed) < STILL
         stuck = casadi.logic_and(standing, casadi.fabs(torque) <= held)
         moving = casadi.if_else(standing, casadi.sign(torque), casadi.sign(speed))

@@ -216,12 +216,7 @@ class _Loop:
             momentum = casadi.if_else(carriages.stuck, 0.0, momentum)
         now = Present(self.angle, momentum, self.slides, carriages.stuck)
         high = wants_high(self.c, axis, now, self.drives[axis], self.leads, self.offsets[axis])
-        ends = (
-            (self.c.radial_high, self.c.radial_low)
-            if axis == "radial"
-            else (self.c.tangential_high, self.c.tangential_low)
-        )
-        return casadi.if_else(high, *ends)
+        return casadi.if_else(high, *reversed(self.c.stroke(axis)))
 
     def _forces(self, goals: dict[str, Any], carriages: Carriages) -> dict[str, Any]:
         """Return the forces of the drives, from the accelerations that they are to give."""

@@ -54,9 +54,8 @@ def wants_high(c: Constants, axis: str, now: Present, drive: Drive, leads: Any, 
 
 def middle_of(c: Constants, axis: str) -> Any:
     """Middle of a stroke [m]."""
-    if axis == "radial":
-        return 0.5 * (c.radial_low + c.radial_high)
-    return 0.5 * (c.tangential_low + c.tangential_high)
+    low, high = c.stroke(axis)
+    return 0.5 * (low + high)
 
 
 def lean_of(c: Constants, axis: str, angle: Any) -> Any:

@@ -12,6 +12,7 @@ from typing import Any
 from rotorpump.physics.constants import Constants, absent
 from rotorpump.physics.energy import energy_above_rest
 from rotorpump.physics.equations import total_inertia, wheel_speed
+from rotorpump.physics.loads import static_moment
 from rotorpump.physics.state import Slides
 from rotorpump.rig.rig import AXES
 
@@ -45,17 +46,10 @@ class Instant:
         return abs(float(wheel_speed(constants, self.momentum, self.slides)))
 
 
-def ends_of(constants: Constants, axis: str) -> tuple[float, float]:
-    """Low and high end of a stroke [m]; they are equal where the axis is held."""
-    if axis == "radial":
-        return constants.radial_low, constants.radial_high
-    return constants.tangential_low, constants.tangential_high
-
-
 @lru_cache(maxsize=16)
 def moved_axes(constants: Constants) -> tuple[str, ...]:
     """Axes along which the mass is driven, in the order in which it moves along them."""
-    return tuple(axis for axis in AXES if len(set(ends_of(constants, axis))) == 2)
+    return tuple(axis for axis in AXES if len(set(constants.stroke(axis))) == 2)
 
 
 @lru_cache(maxsize=32)
@@ -64,7 +58,7 @@ def positions_of(constants: Constants, axis: str) -> tuple[float, ...]:
 
     The ends of the stroke, and the point between them where the mass is closest to the axle.
     """
-    low, high = ends_of(constants, axis)
+    low, high = constants.stroke(axis)
     return tuple(sorted({low, high} | ({0.0} if low < 0.0 < high else set())))
 
 
@@ -160,9 +154,7 @@ def heaviest_place(constants: Constants) -> Slides:
 
 def moment_at(constants: Constants, slides: Slides) -> float:
     """Return the static moment about the axle with the mass at a place [kg m]."""
-    along = constants.mass * slides.radial + constants.unbalance_radial
-    across = constants.mass * slides.tangential + constants.unbalance_tangential
-    return math.hypot(along, across)
+    return math.hypot(*static_moment(constants, slides))
 
 
 def full_pull(constants: Constants) -> float:

@@ -8,7 +8,7 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from functools import lru_cache
 
-from rotorpump.laws.moves import ends_of, full_swing, positions_of, shift_of
+from rotorpump.laws.moves import full_swing, positions_of, shift_of
 from rotorpump.physics.constants import Constants
 from rotorpump.physics.equations import total_inertia
 from rotorpump.physics.state import Slides
@@ -98,7 +98,7 @@ def landmark_rule(constants: Constants) -> Rule:
     def rule(axis: str, slides: Slides) -> Mapping[float, Urge]:
         here = getattr(slides, axis)
         urges = {}
-        for end in ends_of(constants, axis):
+        for end in constants.stroke(axis):
             if end != here:
                 urge = advantage(constants, axis, slides, end, here)
                 urges[end] = Urge(urge.sine, urge.cosine)

@@ -85,6 +85,12 @@ class Constants(NamedTuple):
             tangential_rubbing=rubbing.get("tangential", 0.0),
         )
 
+    def stroke(self, axis: str) -> tuple[Any, Any]:
+        """Low and high end of a stroke [m]; they are equal where the axis is held."""
+        if axis == "radial":
+            return self.radial_low, self.radial_high
+        return self.tangential_low, self.tangential_high
+
 
 def absent(value: Any) -> bool:
     """Whether a constant is a plain zero, so that its terms need not be written."""

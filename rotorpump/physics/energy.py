@@ -7,6 +7,7 @@ from typing import Any
 
 from rotorpump.physics.constants import Constants
 from rotorpump.physics.equations import sliding_momentum, total_inertia
+from rotorpump.physics.loads import static_moment
 from rotorpump.physics.state import Slides
 
 
@@ -35,6 +36,5 @@ def height_moment(xp: Any, constants: Constants, angle: Any, slides: Slides) -> 
     -----
     -(m ρ + u_ρ) cos φ + (m τ + u_τ) sin φ.
     """
-    along = constants.mass * slides.radial + constants.unbalance_radial
-    across = constants.mass * slides.tangential + constants.unbalance_tangential
+    along, across = static_moment(constants, slides)
     return across * xp.sin(angle) - along * xp.cos(angle)

@@ -16,7 +16,12 @@ from typing import Any
 
 from rotorpump.physics.constants import Constants, absent
 from rotorpump.physics.friction import friction_torque
-from rotorpump.physics.loads import axle_reaction, reaction_slope, self_consistent_load
+from rotorpump.physics.loads import (
+    axle_reaction,
+    reaction_slope,
+    self_consistent_load,
+    static_moment,
+)
 from rotorpump.physics.state import Motion, Slides
 
 
@@ -48,8 +53,7 @@ def pull_arm(xp: Any, constants: Constants, angle: Any, slides: Slides) -> Any:
     -----
     (m ρ + u_ρ) sin φ + (m τ + u_τ) cos φ; gravity turns the wheel back with g times this.
     """
-    along = constants.mass * slides.radial + constants.unbalance_radial
-    across = constants.mass * slides.tangential + constants.unbalance_tangential
+    along, across = static_moment(constants, slides)
     return along * xp.sin(angle) + across * xp.cos(angle)
 
 

@@ -68,8 +68,7 @@ def accelerations(
         per_tangential = c.mass * rho
     inertia = c.wheel_inertia + rho * per_tangential - tau * per_radial
 
-    unbalance = c.unbalance_radial * xp.sin(angle) + c.unbalance_tangential * xp.cos(angle)
-    passive = -c.gravity * unbalance - (rho * known_tangential - tau * known_radial)
+    passive = _unbalance_torque(xp, c, angle) - (rho * known_tangential - tau * known_radial)
 
     def at_load(axle_load: Any) -> tuple[Any, tuple[Any, Any], tuple[Any, Any]]:
         rubbed = friction_torque(c, speed, direction, axle_load) - direction * c.load_torque
@@ -119,7 +118,21 @@ def standing_torque(
     Friction holds c + μ a |R|, with the reaction R of the standing wheel.
     """
     still = accelerations(xp, constants, angle, 0.0, slides, radial, tangential, 0.0, stuck=True)
+    return torque_against_hold(xp, constants, angle, slides, still)
+
+
+def torque_against_hold(
+    xp: Any, constants: Constants, angle: Any, slides: Slides, still: Motion
+) -> tuple[Any, Any]:
+    """Return what `standing_torque` does, from the motion of a wheel that is held."""
     c = constants
-    unbalance = c.unbalance_radial * xp.sin(angle) + c.unbalance_tangential * xp.cos(angle)
     moment = slides.radial * still.tangential_contact - slides.tangential * still.radial_contact
-    return -c.gravity * unbalance - moment, c.coulomb + c.load_arm * still.axle_load
+    held = c.coulomb + c.load_arm * still.axle_load
+    return _unbalance_torque(xp, c, angle) - moment, held
+
+
+def _unbalance_torque(xp: Any, c: Constants, angle: Any) -> Any:
+    """Torque of the weight of the wheel's unbalance [N m]."""
+    return -c.gravity * (
+        c.unbalance_radial * xp.sin(angle) + c.unbalance_tangential * xp.cos(angle)
+    )

@@ -42,6 +42,13 @@ def axle_reaction(
     return along, across
 
 
+def static_moment(constants: Constants, slides: Slides) -> tuple[Any, Any]:
+    """Masses times their places along the wheel's axes, m ρ + u_ρ and m τ + u_τ [kg m]."""
+    along = constants.mass * slides.radial + constants.unbalance_radial
+    across = constants.mass * slides.tangential + constants.unbalance_tangential
+    return along, across
+
+
 def reaction_slope(constants: Constants, slides: Slides) -> tuple[Any, Any]:
     """Change of the axle's reaction per acceleration of the wheel, slides held [kg m].
 
@@ -49,9 +56,8 @@ def reaction_slope(constants: Constants, slides: Slides) -> tuple[Any, Any]:
     -----
     ∂R_ρ/∂φ̈ = -(m τ + u_τ), ∂R_τ/∂φ̈ = m ρ + u_ρ.
     """
-    along = -(constants.mass * slides.tangential + constants.unbalance_tangential)
-    across = constants.mass * slides.radial + constants.unbalance_radial
-    return along, across
+    along, across = static_moment(constants, slides)
+    return -across, along
 
 
 def self_consistent_load(

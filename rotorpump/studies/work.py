@@ -71,8 +71,9 @@ class Work:
     def __init__(self, asked: Wanted, accuracy: float, watcher: Watcher | None) -> None:
         self.asked, self.accuracy = asked, accuracy
         rig, task = asked.rig, asked.task
-        self.mirrored = isinstance(task, Rotate) and task.direction < 0
+        self.mirrored = False
         if isinstance(task, Rotate) and task.direction < 0:
+            self.mirrored = True
             rig, task = rig.mirrored(), replace(task, direction=1)
         self.wanted = Wanted(rig, task, asked.measure)
         self.reporter = Reporter(rig, task, asked.measure, watcher)
@@ -93,25 +94,23 @@ class Work:
     def _seeds(self, trials: Sequence[Trial], guess: Trajectory | None) -> list[Seed]:
         """Collect starting motions, the most promising first."""
         rig, task = self.wanted.rig, self.wanted.task
-        relevant = trials
+        relevant, eager = trials, task
         if isinstance(task, SpinUp) and task.deadline is not None:
             # a motion that comes too late may still be hurried
-            relevant = rehearse(rig, replace(task, deadline=None))
+            eager = replace(task, deadline=None)
+            relevant = rehearse(rig, eager)
         seeds = seeds_from(rig, task, relevant)
-        hurried = replace(task, deadline=None) if isinstance(task, SpinUp) else task
         if not isinstance(task, Rotate):
-            beyond = seeds_from(rig, task, rehearse_beyond_ratings(rig, hurried))
-            both = zip_longest(beyond, seeds)
+            both = zip_longest(seeds_from(rig, task, rehearse_beyond_ratings(rig, eager)), seeds)
             seeds = [seed for pair in both for seed in pair if seed is not None]
-        if isinstance(task, Rotate) and task.mean_speed is not None:
+        elif task.mean_speed is not None:
             # the law turns at a speed of its own, and its turn in slow motion may lead nowhere
             seeds.append(plain_turn(rig, 2.0 * math.pi / task.mean_speed))
-        if isinstance(task, SpinUp):
+        if isinstance(eager, SpinUp):
             # Other drives show ways with fewer swings, which may be open to this one as well, or
             # with more, which may cost less.
             factors = (*WEAKER, *STRONGER) if self.wanted.measure in COSTS else STRONGER
             words = {seed.word for seed in seeds}
-            eager = replace(task, deadline=None)
             others = seeds_from(rig, task, rehearse_with_other_drives(rig, eager, factors))
             seeds += [seed for seed in others if seed.word not in words]
         if guess is not None:
@@ -173,7 +172,7 @@ class Work:
     ) -> Solution:
         status, message = candidate.outcome.status, self._praise(found, candidate, trials)
         measure, law = self.asked.measure, trials[0]
-        if law.reached and not law.slams:
+        if law.reached and law.within_limits:
             shortfall = -gain(measure, candidate.value, law.value)
             if shortfall > NOT_WORSE:
                 status = Status.FAILED
@@ -206,7 +205,7 @@ class Work:
     def _praise(self, found: Search, candidate: Candidate, trials: Sequence[Trial]) -> str:
         words = [f"local optimum, found by {found.agreeing} of {found.runs} runs"]
         law = trials[0]
-        if law.reached and not law.slams:
+        if law.reached and law.within_limits:
             share = gain(self.asked.measure, candidate.value, law.value)
             words.append(f"{100.0 * share:+.2g} % against the practical law")
         return "; ".join(words)

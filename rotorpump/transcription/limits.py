@@ -8,7 +8,6 @@ from typing import Any, NamedTuple
 
 import casadi
 
-from rotorpump.physics.constants import Constants
 from rotorpump.transcription.form import LINE_PLACES, POWER_PLACES, TIME, AxisForm, Form
 from rotorpump.transcription.instant import Instant
 from rotorpump.transcription.nodes import lagrange_basis, radau_nodes
@@ -211,17 +210,13 @@ def _between_nodes(
     return [], []
 
 
-def _ends_of(axis: AxisForm, c: Constants) -> tuple[Any, Any]:
-    return getattr(c, f"{axis.name}_low"), getattr(c, f"{axis.name}_high")
-
-
 def _arrival(axis: AxisForm, shared: Shared, now: Instant) -> list[Any]:
     """Rows that forbid a relaxed stop to stop or to throw the mass.
 
     They keep the mass no faster than what the drive alone can brake, at most.
     """
     c, drive = shared.constants, shared.drives[axis.name]
-    low, high = _ends_of(axis, c)
+    low, high = c.stroke(axis.name)
     pace, place = now.pace(axis.name) ** 2 / 2.0, now.place(axis.name)
     strength = drive.force / c.mass + c.gravity
     if axis.name == "tangential":
@@ -242,7 +237,7 @@ def _relaxed_rows(axis: AxisForm, shared: Shared, needed: Any, now: Instant) -> 
     What the needed force exceeds the limit by must be borne by an end stop; excess times gap stays
     below a small share of limit times stroke.
     """
-    low, high = _ends_of(axis, shared.constants)
+    low, high = shared.constants.stroke(axis.name)
     share = needed / shared.drives[axis.name].force
     length, place = shared.scales.slide(axis.name).length, now.place(axis.name)
     inward = (-share - 1.0) * (high - place) / length
